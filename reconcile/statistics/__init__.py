@@ -1,0 +1,16 @@
+"""Named error sources, least squares, variance components and tests."""
+
+from reconcile.statistics.ledger import Ledger, Sources, sources_of_one_line, stack, stated
+from reconcile.statistics.linear_fit import Blocks, LinearFit, Response, least_squares
+
+__all__ = [
+    "Blocks",
+    "Ledger",
+    "LinearFit",
+    "Response",
+    "Sources",
+    "least_squares",
+    "sources_of_one_line",
+    "stack",
+    "stated",
+]
