@@ -1,10 +1,12 @@
 """Named error sources, least squares, variance components and tests."""
 
+from reconcile.statistics.collecting import Collector
 from reconcile.statistics.ledger import Ledger, Sources, sources_of_one_line, stack, stated
 from reconcile.statistics.linear_fit import Blocks, LinearFit, Response, least_squares
 
 __all__ = [
     "Blocks",
+    "Collector",
     "Ledger",
     "LinearFit",
     "Response",

@@ -118,7 +118,9 @@ class Ledger:
 
     def take(self, rows: Integers) -> Ledger:
         """Some of the entries, with the sources that they know."""
-        return Ledger(self.value[rows], self.private[rows], self.lines, sparse.csr_array(self.loading[rows]), self.sources)
+        return Ledger(
+            self.value[rows], self.private[rows], self.lines, sparse.csr_array(self.loading[rows]), self.sources
+        )
 
     def map(self, matrix: sparse.sparray) -> Ledger:
         """The ledger of matrix @ value, exact: a private error that reaches several results becomes a shared source.

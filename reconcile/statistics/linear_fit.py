@@ -8,9 +8,9 @@ from functools import cached_property
 import numpy as np
 from numpy.typing import NDArray
 from scipy import linalg, sparse
-from scipy.sparse.linalg import SuperLU, splu
 
 from reconcile.statistics.ledger import Ledger, Sources
+from reconcile.statistics.matrices import SMALL, as_dense, beside, factored, scaled_rows
 
 Floats = NDArray[np.float64]
 Integers = NDArray[np.int64]
@@ -54,16 +54,16 @@ class LinearFit:
         self.weight = 1 / variance
         self._narrow, self._wide = _narrow_and_wide(observations, blocks)
         loading = sparse.csc_array(observations.loading)
-        narrow = sparse.csr_array(loading[:, self._narrow])
-        self._inner = sparse.csr_array(sparse.hstack([design, narrow], format="csr"))
-        self._outer = sparse.csr_array(loading[:, self._wide])
-        weighted = sparse.csr_array(self._inner.T @ _scale_rows(self._inner, self.weight))
+        narrow, outer = sparse.csr_array(loading[:, self._narrow]), sparse.csr_array(loading[:, self._wide])
+        dense = len(observations) * (self.unknowns + loading.shape[1]) <= SMALL
+        self._inner = beside(design, narrow, dense)
+        self._outer = outer.toarray() if dense else outer
         prior = np.concatenate([np.zeros(self.unknowns), np.ones(len(self._narrow))])
-        self._lu = _factor(sparse.csc_array(weighted + sparse.diags_array(prior)))
-        outer_weighted = _scale_rows(self._outer, self.weight)
-        border = (self._inner.T @ outer_weighted).toarray()
-        self._border_solved = self._lu.solve(border) if border.shape[1] else border
-        corner = (self._outer.T @ outer_weighted).toarray() + np.eye(len(self._wide)) - border.T @ self._border_solved
+        self._factor = factored(self._inner.T @ scaled_rows(self._inner, self.weight), prior)
+        outer_weighted = scaled_rows(self._outer, self.weight)
+        border = as_dense(self._inner.T @ outer_weighted)
+        self._border_solved = self._factor.solve(border) if border.shape[1] else border
+        corner = as_dense(self._outer.T @ outer_weighted) + np.eye(len(self._wide)) - border.T @ self._border_solved
         self._corner = linalg.cho_factor((corner + corner.T) / 2)
         inner, outer = self._solve(self._project(observations.value))
         self.value: Floats = inner[: self.unknowns]
@@ -71,16 +71,19 @@ class LinearFit:
         #: y − Xθ̂ − Fε̂, what neither unknowns nor sources explain, (n,)
         self.residual: Floats = observations.value - self._inner @ inner - self._outer @ outer
 
-    def _project(self, columns: Floats) -> tuple[Floats, Floats]:
-        weighted = columns * (self.weight if columns.ndim == 1 else self.weight[:, None])
-        return np.asarray(self._inner.T @ weighted), np.asarray(self._outer.T @ weighted)
+    def _project(self, columns: Floats | sparse.csr_array) -> tuple[Floats, Floats]:
+        if isinstance(columns, np.ndarray):
+            weighted = columns * (self.weight if columns.ndim == 1 else self.weight[:, None])
+            return np.asarray(self._inner.T @ weighted), np.asarray(self._outer.T @ weighted)
+        scaled = scaled_rows(columns, self.weight)
+        return as_dense(self._inner.T @ scaled), as_dense(self._outer.T @ scaled)
 
     def _solve(self, right: tuple[Floats, Floats]) -> tuple[Floats, Floats]:
         inner, outer = right
         if not len(self._wide):
-            return self._lu.solve(inner), outer
+            return self._factor.solve(inner), outer
         outer = linalg.cho_solve(self._corner, outer - self._border_solved.T @ inner)
-        return self._lu.solve(inner) - self._border_solved @ outer, outer
+        return self._factor.solve(inner) - self._border_solved @ outer, outer
 
     @cached_property
     def chi_square(self) -> float:
@@ -96,7 +99,7 @@ class LinearFit:
     @cached_property
     def log_restricted_likelihood(self) -> float:
         """REML log-likelihood of the variances used, without its constant (Patterson & Thompson 1971, from memory)."""
-        log_a = float(np.log(np.abs(self._lu.U.diagonal())).sum())
+        log_a = self._factor.log_determinant
         log_s = 2 * float(np.log(np.diag(self._corner[0])).sum())
         return -0.5 * (log_a + log_s - float(np.log(self.weight).sum()) + self.chi_square)
 
@@ -106,12 +109,12 @@ class LinearFit:
         out[self._narrow], out[self._wide] = self._source_inner, self._source_outer
         return out
 
-    def respond(self, loadings: Floats, diagonal: bool = False) -> Response:
+    def respond(self, loadings: sparse.csr_array, diagonal: bool = False) -> Response:
         """Score, information and shift of hypotheses that would add loadings @ size to the observations.
 
         Parameters
         ----------
-        loadings : array (n, h)
+        loadings : sparse (n, h)
             One column a hypothesis, in the observations' unit per unit of its size.
         diagonal : bool
             Only the diagonal of the information, for many hypotheses at once.
@@ -122,17 +125,23 @@ class LinearFit:
         """
         inner_right, outer_right = self._project(loadings)
         inner, outer = self._solve((inner_right, outer_right))
-        weighted = loadings * self.weight[:, None]
+        weighted = scaled_rows(loadings, self.weight)
         score = np.asarray(weighted.T @ self.residual)
         if diagonal:
             information = (
-                np.einsum("nh,nh->h", weighted, loadings)
+                np.asarray(loadings.multiply(weighted).sum(axis=0)).ravel()
                 - np.einsum("qh,qh->h", inner_right, inner)
                 - np.einsum("kh,kh->h", outer_right, outer)
             )
         else:
-            information = weighted.T @ loadings - inner_right.T @ inner - outer_right.T @ outer
+            information = (weighted.T @ loadings).toarray() - inner_right.T @ inner - outer_right.T @ outer
         return Response(score, information, inner[: self.unknowns])
+
+    def unexplained(self, loadings: sparse.csr_array) -> Floats:
+        """P L, (n, h): weighted loadings less what unknowns and sources would take up of them; few columns only."""
+        inner, outer = self._solve(self._project(loadings))
+        left = as_dense(loadings) - self._inner @ inner - self._outer @ outer
+        return np.asarray(left * self.weight[:, None])
 
     def single_observations(self) -> tuple[Floats, Floats]:
         """Score and information of an error in each observation alone, both (n,): the diagonal of `respond(identity)`."""
@@ -141,7 +150,7 @@ class LinearFit:
             root = linalg.solve_triangular(self._corner[0], np.eye(len(self._wide)), trans="T", lower=self._corner[1])
             for start in range(0, len(leverage), CHUNK):
                 at = slice(start, start + CHUNK)
-                left = self._outer[at].toarray() - self._inner[at] @ self._border_solved
+                left = as_dense(self._outer[at]) - self._inner[at] @ self._border_solved
                 leverage[at] += ((left @ root.T) ** 2).sum(axis=1)
         return self.weight * self.residual, np.maximum(self.weight - self.weight**2 * leverage, 0.0)
 
@@ -151,8 +160,8 @@ class LinearFit:
         leverage = np.zeros(rows)
         if self.blocks is None:
             for start in range(0, rows, CHUNK):
-                some = self._inner[start : start + CHUNK].toarray()
-                leverage[start : start + CHUNK] = np.einsum("rq,qr->r", some, self._lu.solve(some.T))
+                some = as_dense(self._inner[start : start + CHUNK])
+                leverage[start : start + CHUNK] = np.einsum("rq,qr->r", some, self._factor.solve(some.T))
             return leverage
         for chosen, solved in self._coloured(np.arange(self._inner.shape[1])):
             picked = np.zeros(self._inner.shape[1])
@@ -164,8 +173,8 @@ class LinearFit:
     def _block_of_column(self) -> Integers:
         """Block of every unknown and narrow source, (q,)."""
         assert self.blocks is not None
-        first = _first_row(sparse.csc_array(self._inner))
-        return np.concatenate([self.blocks.of_unknown, self.blocks.of_row[first[self.unknowns :]]])
+        first = _first_row(sparse.csc_array(self.observations.loading)[:, self._narrow])
+        return np.concatenate([self.blocks.of_unknown, self.blocks.of_row[first]])
 
     def _coloured(self, columns: Integers) -> list[tuple[Integers, Floats]]:
         """Columns of A⁻¹, one of each block at a time: A is block-diagonal, so they do not disturb each other."""
@@ -178,7 +187,7 @@ class LinearFit:
             chosen = columns[order[rank == colour]]
             unit = np.zeros(self._inner.shape[1])
             unit[chosen] = 1.0
-            out.append((chosen, self._lu.solve(unit)))
+            out.append((chosen, self._factor.solve(unit)))
         return out
 
     def block_covariance(self, rows: Integers, columns: Integers) -> Floats:
@@ -204,16 +213,37 @@ class LinearFit:
         half = self._border_solved[unknowns]
         return np.einsum("sk,ks->s", half, linalg.cho_solve(self._corner, half.T)) if half.size else np.zeros(len(half))
 
-    def variance(self, unknowns: Integers) -> Floats:
-        """Variance of single estimates, all sources included, (s,)."""
-        out = np.zeros(len(unknowns))
-        for start in range(0, len(unknowns), CHUNK):
-            some = unknowns[start : start + CHUNK]
-            unit = np.zeros((self._inner.shape[1], len(some)))
-            unit[some, np.arange(len(some))] = 1.0
-            inner, _ = self._solve((unit, np.zeros((len(self._wide), len(some)))))
-            out[start : start + CHUNK] = inner[some, np.arange(len(some))]
+    def variance(self, combinations: sparse.sparray) -> Floats:
+        """Variance of linear combinations of the estimates, all sources included: diag(L Cov Lᵀ) of L (s, p)."""
+        wanted = sparse.csr_array(combinations)
+        out = np.zeros(wanted.shape[0])
+        for start in range(0, len(out), CHUNK):
+            some = wanted[start : start + CHUNK].toarray().T
+            right = np.zeros((self._inner.shape[1], some.shape[1]))
+            right[: self.unknowns] = some
+            inner, _ = self._solve((right, np.zeros((len(self._wide), some.shape[1]))))
+            out[start : start + CHUNK] = np.einsum("ps,ps->s", some, inner[: self.unknowns])
         return out
+
+    def redundancy(self) -> Floats:
+        """Redundancy number of each observation, diag(V P), (n,): what of its own error stays in its residual.
+
+        The sum is the degrees of freedom.
+        """
+        rows = len(self.observations)
+        own = np.zeros(rows)
+        for start in range(0, rows, CHUNK):
+            at = np.arange(start, min(start + CHUNK, rows))
+            unit = np.zeros((rows, len(at)))
+            unit[at, np.arange(len(at))] = 1.0
+            inner, outer = self._solve(self._project(unit))
+            taken = np.einsum("rq,qr->r", as_dense(self._inner[at]), inner)
+            taken += np.einsum("rk,kr->r", as_dense(self._outer[at]), outer)
+            source = np.zeros((len(self.observations.sources), len(at)))
+            source[self._narrow], source[self._wide] = inner[self.unknowns :], outer
+            through = np.einsum("rk,kr->r", self.observations.loading[at].toarray(), source)
+            own[at] = 1 - taken + through
+        return own
 
     def estimate(self, unknowns: Integers) -> Ledger:
         """The chosen unknowns as a ledger: what their errors come from, by name, and how they hang together.
@@ -285,17 +315,6 @@ def least_squares(observations: Ledger, design: sparse.csr_array, blocks: Blocks
     if (seen == 0).any():
         raise ValueError(f"unknown {int(np.flatnonzero(seen == 0)[0])} is in no observation")
     return LinearFit(observations, sparse.csr_array(design), blocks)
-
-
-def _factor(matrix: sparse.csc_array) -> SuperLU:
-    """Symmetric sparse factors; the ordering is 100 times faster here than scipy's default (shared measurements)."""
-    return splu(matrix, permc_spec="MMD_AT_PLUS_A", diag_pivot_thresh=0.0, options={"SymmetricMode": True})
-
-
-def _scale_rows(matrix: sparse.csr_array, factor: Floats) -> sparse.csr_array:
-    scaled = matrix.copy()
-    scaled.data = matrix.data * np.repeat(factor, np.diff(matrix.indptr))
-    return scaled
 
 
 def _first_row(matrix: sparse.csc_array) -> Integers:

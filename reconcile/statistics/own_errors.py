@@ -81,7 +81,9 @@ def _share_lines(
     for b in np.unique(block[several]).tolist():  # electrolytes with hydrates: few
         mine = order[edges[b] : edges[b + 1]]
         entries = np.flatnonzero(block == b)
-        gain = np.array([g[mine] for e in entries for table, g in gains if table[b] == e])  # (crystals, own observations)
+        gain = np.array(
+            [g[mine] for e in entries for table, g in gains if table[b] == e]
+        )  # (crystals, own observations)
         for column, line in enumerate(fit.observations.lines):
             root = gain * fit.observations.private[mine, column]
             size, direction = np.linalg.eigh(root @ root.T)

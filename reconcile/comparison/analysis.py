@@ -1,0 +1,176 @@
+"""Everything that was found in a campaign, as tidy tables named as in results.json."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from functools import cached_property
+
+import numpy as np
+import pandas as pd
+
+from reconcile.calorimetry import ReducedRuns
+from reconcile.campaign import Campaign
+from reconcile.comparison.told import assumptions_table, sources_table
+from reconcile.cycles import Adjustment
+from reconcile.dilution import Dilution
+from reconcile.dilution.tables import (
+    SharedCovariance,
+    budget_table,
+    covariance_of,
+    curves_table,
+    parameters_of,
+    random_and_shared,
+    runs_table,
+    smoothed_of,
+)
+
+VERDICTS = {"satisfactory": "agrees", "questionable": "questionable", "unsatisfactory": "disagrees"}
+
+
+@dataclass(frozen=True, eq=False)
+class Analysis:
+    """A campaign and all that was found in it. Tables are made when first asked for."""
+
+    campaign: Campaign
+    reduced: ReducedRuns
+    dilution: Dilution
+    adjusted: Adjustment
+    bias: pd.DataFrame
+    comparison: pd.DataFrame
+    published: pd.DataFrame  # enthalpies of solution, a row a salt of the fit
+    parameters_used: pd.DataFrame  # published dilution parameters, index electrolyte
+    heat_capacities: pd.DataFrame  # ΔsolC_p°, a row a salt
+
+    def __repr__(self) -> str:
+        """One line for a notebook or a terminal."""
+        n, s = int(self.dilution.included.sum()), len(self.dilution.crystal)
+        return f"<Analysis of {self.campaign.title!r}: {s} salts from {n} of {len(self.campaign.runs)} runs>"
+
+    @cached_property
+    def salts(self) -> pd.DataFrame:
+        """One row a salt, in the campaign's order."""
+        return _salts(self)
+
+    @cached_property
+    def runs(self) -> pd.DataFrame:
+        """One row a run."""
+        return runs_table(self.campaign, self.reduced, self.dilution)
+
+    @cached_property
+    def covariance(self) -> SharedCovariance:
+        """Of the standard enthalpies, before the cycles."""
+        return covariance_of(self.campaign, self.dilution)
+
+    @property
+    def adjustment(self) -> dict[str, float | int | None]:
+        """χ² of the adjustment of all salts with the references."""
+        a = self.adjusted
+        return {"chi_square": a.chi_square, "degrees_of_freedom": a.degrees_of_freedom, "p_value": a.p_value}
+
+    @property
+    def reconciled(self) -> pd.DataFrame:
+        """One row a salt in the adjustment."""
+        return self.adjusted.reconciled
+
+    @property
+    def references(self) -> pd.DataFrame:
+        """One row a reference value in the adjustment."""
+        return self.adjusted.references
+
+    @property
+    def cycles(self) -> pd.DataFrame:
+        """One row a cycle."""
+        return self.adjusted.cycles
+
+    @cached_property
+    def budget(self) -> pd.DataFrame:
+        """Uncertainty budgets, at most twelve lines a salt and the rest."""
+        return budget_table(self.campaign, self.dilution)
+
+    @cached_property
+    def assumptions(self) -> pd.DataFrame:
+        """What had to be assumed, and what it contributes."""
+        return assumptions_table(self.campaign, self.reduced, self.dilution, self.adjusted)
+
+    @cached_property
+    def sources(self) -> pd.DataFrame:
+        """Every reference value used, with its status."""
+        return sources_table(self.campaign, self.dilution, self.adjusted, self.parameters_used, self.heat_capacities)
+
+    @cached_property
+    def curves(self) -> pd.DataFrame:
+        """Curves for the figures."""
+        return curves_table(self.campaign, self.reduced, self.dilution)
+
+
+def _salts(analysis: Analysis) -> pd.DataFrame:
+    campaign, dilution, limits = analysis.campaign, analysis.dilution, analysis.dilution.extrapolation
+    count = len(campaign.salts)
+    at = dilution.crystal
+    block = limits.problem.block_of_crystal
+    random, shared = random_and_shared(dilution)
+
+    def spread(values: np.ndarray, empty: float = np.nan) -> np.ndarray:
+        out = np.full(count, empty)
+        out[at] = values
+        return out
+
+    def spread_objects(values: list, empty: object) -> np.ndarray:
+        out = np.empty(count, dtype=object)
+        out[:] = [empty] * count
+        for i, value in zip(at.tolist(), values, strict=True):
+            out[i] = value
+        return out
+
+    included = dilution.included
+    runs = np.bincount(campaign.salt[included], minlength=count)
+    low, high = np.full(count, np.inf), np.full(count, -np.inf)
+    np.minimum.at(low, campaign.salt[included], analysis.reduced.molality.value[included])
+    np.maximum.at(high, campaign.salt[included], analysis.reduced.molality.value[included])
+    batches = [size for c, size in zip(limits.problem.components, limits.sizes, strict=True) if c.group is not None]
+    between = np.full(len(at), np.nan)
+    for component, size in zip(limits.problem.components, limits.sizes, strict=True):
+        if component.group is not None:
+            scale = np.bincount(limits.problem.salt, component.scale, minlength=len(at)) / np.bincount(
+                limits.problem.salt, minlength=len(at)
+            )
+            between = size * scale
+    assert len(batches) < 2
+    by_salt = analysis.comparison.set_index("salt")["verdict"] if len(analysis.comparison) else {}
+    formulas = [s.formula for s in campaign.salts]
+    verdict = [VERDICTS[by_salt[f]] if f in by_salt else "no reference" for f in formulas]
+    verdict = ["no limit" if i in dilution.no_limit else v for i, v in enumerate(verdict)]
+    model = np.where(limits.problem.prior.published[block], "published parameters", "population").tolist()
+    value, u = spread(limits.crystals.value), spread(limits.crystals.u)
+    return pd.DataFrame(
+        {
+            "salt": formulas,
+            "molar_mass": [s.molar_mass for s in campaign.salts],
+            "temperature": campaign.reference_temperature,
+            "standard_enthalpy": value,
+            "u": u,
+            "degrees_of_freedom": spread(limits.degrees_of_freedom),
+            "coverage_factor": spread(limits.coverage_factor),
+            "interval_low": spread(limits.interval[:, 0]),
+            "interval_high": spread(limits.interval[:, 1]),
+            "u_random": spread(random),
+            "u_shared": spread(shared),
+            "runs": runs,
+            "molality_min": np.where(runs > 0, low, np.nan),
+            "molality_max": np.where(runs > 0, high, np.nan),
+            "dilution_model": spread_objects(model, "limiting law only"),
+            "prior_share": spread(limits.prior_share),
+            "prior_conflict_p": spread(limits.prior_conflict_p[block]),
+            "parameters": spread_objects(parameters_of(dilution), {}),
+            "slope": dilution.slope,
+            "free_slope": np.nan,
+            "heat_capacity_change": dilution.heat_capacity.value,
+            "between_batch_sd": spread(between),
+            "verdict": verdict,
+            "reason": [dilution.no_limit.get(i, "") for i in range(count)],
+            "smoothed": spread_objects(smoothed_of(campaign, analysis.reduced, dilution), []),
+            "recommended_value": value,
+            "recommended_u": u,
+            "recommended_from": np.where(np.isfinite(value), "measured", "none"),
+        }
+    )

@@ -1,0 +1,18 @@
+"""Relative apparent molar enthalpy, and the extrapolation of all salts to infinite dilution."""
+
+from reconcile.dilution.electrolytes import Electrolytes, electrolytes
+from reconcile.dilution.priors import PublishedSets, published_sets
+from reconcile.dilution.season import Dilution, dilute, model_values
+from reconcile.dilution.temperature import HeatCapacityChange, heat_capacity_change
+
+__all__ = [
+    "Dilution",
+    "Electrolytes",
+    "HeatCapacityChange",
+    "PublishedSets",
+    "dilute",
+    "electrolytes",
+    "heat_capacity_change",
+    "model_values",
+    "published_sets",
+]

@@ -1,0 +1,46 @@
+"""Runs at other temperatures: the heat-capacity change of each salt, held or estimated."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import numpy as np
+import pandas as pd
+from numpy.typing import NDArray
+
+from reconcile.chemistry import Salt
+
+Floats = NDArray[np.float64]
+
+TYPICAL = -130.0  # J/(K mol) per unit of ½Σνz²: near NaCl −134, KCl −166, CaCl2/3 −117 (reference_data)
+U_TYPICAL = 60.0
+U_CURVATURE = 2.0  # J/(K² mol) per unit of ½Σνz², of dΔsolC_p/dT (design, 5.2)
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class HeatCapacityChange:
+    """ΔsolC_p° of each salt, J/(K mol)."""
+
+    value: Floats  # (S,)
+    u: Floats  # (S,)
+    held: NDArray[np.bool_]  # (S,) False where it is only typical of the charge type
+
+
+def heat_capacity_change(salts: Sequence[Salt], held: pd.DataFrame) -> HeatCapacityChange:
+    """ΔsolC_p° from the reference tables, else a typical value with a wide uncertainty.
+
+    Parameters
+    ----------
+    salts : sequence of Salt
+    held : DataFrame
+        `reference.heat_capacity_changes(salts)`: a row a salt with value and u, NaN where none is held.
+    """
+    factor = np.array([0.5 * sum(nu * z * z for (_, nu), z in zip(s.ions, s.charges, strict=True)) for s in salts])
+    value, u = held["value"].to_numpy(float), held["u"].to_numpy(float)
+    known = np.isfinite(value)
+    return HeatCapacityChange(
+        np.where(known, value, TYPICAL * factor),
+        np.where(known & np.isfinite(u), u, U_TYPICAL * factor),
+        known,
+    )

@@ -1,0 +1,50 @@
+"""The whole job: from a checked campaign to everything that a report prints."""
+
+from __future__ import annotations
+
+from reconcile import reference
+from reconcile.bias import search_bias
+from reconcile.calorimetry import reduce_runs
+from reconcile.campaign import Campaign
+from reconcile.chemistry import water
+from reconcile.comparison import Analysis, compare
+from reconcile.cycles import adjust, network
+from reconcile.dilution import dilute, heat_capacity_change, published_sets
+
+
+def analyse(campaign: Campaign) -> Analysis:
+    """Reduce, extrapolate, adjust, search for bias, compare: one way through.
+
+    Parameters
+    ----------
+    campaign : Campaign
+        As `read_campaign` returns it.
+
+    Returns
+    -------
+    Analysis
+        With tidy pandas tables under the names of results.json.
+    """
+    # runs: what each calorimeter says, kJ/mol at the run's own temperature and molality
+    runs = reduce_runs(campaign)
+
+    # dilution: all salts to infinite dilution, their parameters leaning on what is published
+    parameters = reference.dilution_parameters()
+    sets = published_sets(parameters, float(water.debye_hueckel_slope(298.15)))
+    heat_capacities = reference.heat_capacity_changes(campaign.salts)
+    dilution = dilute(campaign, runs, sets, heat_capacity_change(campaign.salts, heat_capacities))
+    salts = [campaign.salts[i] for i in dilution.crystal]
+    formulas = tuple(salt.formula for salt in salts)
+    limits = dilution.extrapolation
+
+    # cycles: all salts and the reference values in one adjustment
+    published = reference.solution_enthalpies(formulas)
+    net = network(salts, limits.crystals, reference.formation_enthalpies(campaign.formation_set), published)
+    adjusted = adjust(formulas, net)
+
+    # bias: what could be wrong, asked of runs and cycles together
+    bias = search_bias(campaign, runs, dilution, adjusted)
+
+    # comparison: scores against published values
+    scores = compare(formulas, limits.crystals.value, limits.crystals.u, limits.half_width, published, net.circular)
+    return Analysis(campaign, runs, dilution, adjusted, bias, scores, published, parameters, heat_capacities)
