@@ -33,7 +33,7 @@ def analyse(campaign: Campaign) -> Analysis:
     sets = published_sets(parameters, float(water.debye_hueckel_slope(298.15)))
     heat_capacities = reference.heat_capacity_changes(campaign.salts)
     dilution = dilute(campaign, runs, sets, heat_capacity_change(campaign.salts, heat_capacities))
-    salts = [campaign.salts[i] for i in dilution.crystal]
+    salts = [campaign.salts[i] for i in dilution.layout.crystal]
     formulas = tuple(salt.formula for salt in salts)
     limits = dilution.extrapolation
 

@@ -27,14 +27,16 @@ class Evidence:
     testable: NDArray[np.bool_]  # (h,)
 
 
-def evidence(dilution: Dilution, adjustment: Adjustment, on_runs: sparse.csr_array, on_references: sparse.csr_array) -> Evidence:
+def evidence(
+    dilution: Dilution, adjustment: Adjustment, on_runs: sparse.csr_array, on_references: sparse.csr_array
+) -> Evidence:
     """Ask both fits of hypotheses.
 
     Parameters
     ----------
     dilution, adjustment
-        The two fits. Given the salts' estimates and their covariance, the runs' residuals are independent of them, so scores
-        and information add.
+        The two fits. Given the salts' estimates and their covariance, the runs' residuals are independent of them,
+        so scores and information add.
     on_runs : sparse (observations of the runs' fit, h)
     on_references : sparse (observations of the adjustment, h)
         Loadings on reference values; what the runs' fit passes on to the salts is added here.

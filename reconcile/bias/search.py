@@ -57,14 +57,14 @@ class _Stage:
 def search_bias(campaign: Campaign, runs: ReducedRuns, dilution: Dilution, adjustment: Adjustment) -> pd.DataFrame:
     """Test the catalogue, each run and each reference value; most significant first.
 
-    The most significant is accepted into a joint account as long as its adjusted p is below 0.05; all sizes and tests are
-    then given the others accepted. Nothing is taken out of the table of salts.
+    The most significant is accepted into a joint account as long as its adjusted p is below 0.05; all sizes and
+    tests are then given the others accepted. Nothing is taken out of the table of salts.
 
     Returns
     -------
     DataFrame: hypothesis, subject, size, u, unit, interval_low, interval_high, degrees_of_freedom, statistic, p_value,
-    p_adjusted, delta_chi_square, smallest_detectable, rests_on, confounded_with (design, 6). Of single runs and reference
-    values: those with adjusted p < 0.05 and the worst one.
+    p_adjusted, delta_chi_square, smallest_detectable, rests_on, confounded_with (design, 6). Of single runs and
+    reference values: those with adjusted p < 0.05 and the worst one.
     """
     columns, asked = _catalogue(campaign, runs, dilution)
     accepted: list[int] = []  # positions in the catalogue and among the references
@@ -83,14 +83,16 @@ def search_bias(campaign: Campaign, runs: ReducedRuns, dilution: Dilution, adjus
             accepted.append(best)
         else:
             spoilt.append(int(stage.runs[best - fixed]))
-    return _table(stage, dilution.extrapolation.freedom, len(dilution.row))
+    return _table(stage, dilution.extrapolation.freedom, len(dilution.layout.row))
 
 
 def _catalogue(campaign: Campaign, runs: ReducedRuns, dilution: Dilution) -> tuple[sparse.csr_array, list[_Asked]]:
     """Loadings of all subjects that touch an included run, on the observations of the runs' fit."""
     parts, asked = [sparse.csr_array((len(campaign.runs), 0))], []
     for kind in CATALOGUE:
-        loading = sparse.csr_array(sparse.diags_array(dilution.included.astype(float)) @ kind.loadings(campaign, runs))
+        loading = sparse.csr_array(
+            sparse.diags_array(dilution.layout.included.astype(float)) @ kind.loadings(campaign, runs)
+        )
         touched = np.flatnonzero(np.asarray(abs(loading).sum(axis=0)).ravel() > 0)
         parts.append(sparse.csr_array(loading[:, touched]))
         subjects = kind.subjects(campaign)
@@ -107,10 +109,12 @@ def _stage(
     salts = len(adjustment.reconciled)
     references = np.arange(salts, len(adjustment.fit.weight))
     quantity, species = adjustment.references["quantity"].tolist(), adjustment.references["species"].tolist()
-    asked = asked + [_Asked("reference", f"{s}, {q}", "kJ/mol", "cycles") for s, q in zip(species, quantity, strict=True)]
+    asked = asked + [
+        _Asked("reference", f"{s}, {q}", "kJ/mol", "cycles") for s, q in zip(species, quantity, strict=True)
+    ]
     worst, visible = _worst_runs(dilution, columns, asked, adjustment, accepted, spoilt)
     labels = campaign.runs.keys["run"]
-    names = [labels.labels[labels.code[dilution.row[r]]] for r in worst.tolist()]
+    names = [labels.labels[labels.code[dilution.layout.row[r]]] for r in worst.tolist()]
     fixed = len(asked)
     asked = asked + [_Asked("run", name, "kJ/mol", "molality") for name in names]
 
@@ -118,7 +122,9 @@ def _stage(
     on_runs = sparse.csr_array(sparse.hstack([columns, empty, units(worst, len(fit.weight))], format="csr"))
     before = sparse.csr_array((len(adjustment.fit.weight), columns.shape[1]))
     after = sparse.csr_array((len(adjustment.fit.weight), len(worst)))
-    on_references = sparse.csr_array(sparse.hstack([before, units(references, len(adjustment.fit.weight)), after], format="csr"))
+    on_references = sparse.csr_array(
+        sparse.hstack([before, units(references, len(adjustment.fit.weight)), after], format="csr")
+    )
     found = evidence(dilution, adjustment, on_runs, on_references)
 
     given = accepted + list(range(fixed, fixed + len(spoilt)))
@@ -140,13 +146,15 @@ def _worst_runs(
     dilution: Dilution, columns: sparse.csr_array, asked: list[_Asked], adjustment: Adjustment, accepted: list[int],
     spoilt: list[int],
 ) -> tuple[Integers, int]:  # fmt: skip
-    """The spoilt runs accepted, then the worst of the others given what is accepted; and how many runs could be told."""
+    """The spoilt runs accepted, then the worst of the others given what is accepted; and how many can be told."""
     fit = dilution.extrapolation.fit
-    n = len(dilution.row)
+    n = len(dilution.layout.row)
     score, information = (part[:n].copy() for part in fit.single_observations())
     visible = information > 1e-6 * fit.weight[:n]
     on_runs = [a for a in accepted if a < columns.shape[1]]
-    taken = sparse.csr_array(sparse.hstack([columns[:, on_runs], units(np.array(spoilt, dtype=int), len(fit.weight))], format="csr"))
+    taken = sparse.csr_array(
+        sparse.hstack([columns[:, on_runs], units(np.array(spoilt, dtype=int), len(fit.weight))], format="csr")
+    )
     if taken.shape[1]:
         none = sparse.csr_array((len(adjustment.fit.weight), taken.shape[1]))
         together = evidence(dilution, adjustment, taken, none)
@@ -164,8 +172,8 @@ def _worst_runs(
 def _doubled(stage: _Stage) -> NDArray[np.bool_]:
     """True for a hypothesis of the same direction as another of the catalogue.
 
-    Of two kinds the later one of the catalogue; of two subjects of one kind the less significant: two calorimeters that only
-    differ from each other, where the references say which. A size that cannot be loses to one that can.
+    Of two kinds the later one of the catalogue; of two subjects of one kind the less significant: two calorimeters
+    that only differ from each other, where the references say which. A size that cannot be loses to one that can.
     """
     out = np.zeros(len(stage.asked), bool)
     able = np.array([a.kind is not None for a in stage.asked], dtype=bool) & stage.found.testable
@@ -211,7 +219,9 @@ def _table(stage: _Stage, freedom: float, runs: int) -> pd.DataFrame:
         }
     )
     frame = frame[~_doubled(stage)]
-    frame = frame.sort_values(["p_value", "delta_chi_square"], ascending=[True, False], kind="stable", na_position="last")
+    frame = frame.sort_values(
+        ["p_value", "delta_chi_square"], ascending=[True, False], kind="stable", na_position="last"
+    )
     few = frame["hypothesis"].isin(["run", "reference"])
     worst = few & ~frame["hypothesis"].where(few).duplicated()
     return frame[~few | (frame["p_adjusted"] < LEVEL) | worst].reset_index(drop=True)

@@ -47,7 +47,7 @@ def molar_enthalpy(heat: ArrayLike, mass: ArrayLike, molar_mass: ArrayLike, mass
     bad = np.flatnonzero(~(pure > 0))  # so written, NaN is bad too
     if bad.size:
         raise ValueError(f"salt at position {bad[0]}: {float(pure.flat[bad[0]])} g; expected more than 0 g")
-    return np.asarray(heat, float) * np.asarray(molar_mass, float) / pure / 1000
+    return np.asarray(np.asarray(heat, float) * np.asarray(molar_mass, float) / pure / 1000)
 
 
 def molality_over_all_water(

@@ -65,21 +65,22 @@ def reduce_runs(campaign: Campaign) -> ReducedRuns:
     x = _per_run(lot_water, campaign.sample, 0.0)
     stray = _per_run(parasitic, campaign.calorimeter, 0.0)
 
-    mass = np.where(by_heat, q["mass"].value, 1.0)
-    water = np.where(by_heat, q["water"].value, 1.0)
+    weighed = np.isfinite(q["mass"].value) & np.isfinite(q["water"].value)  # a molality beside masses is only a check
+    mass = np.where(weighed, q["mass"].value, 1.0)
+    water = np.where(weighed, q["water"].value, 1.0)
     heat = np.where(by_heat, q["heat"].value - stray, 0.0)
-    amount = np.where(by_heat, mass * w / molar_mass, np.nan)
+    amount = np.where(weighed, mass * w / molar_mass, np.nan)
     enthalpy = np.where(by_heat, molar_enthalpy(heat, mass, molar_mass, w), q["enthalpy"].value)
-    molality = np.where(by_heat, molality_over_all_water(mass, water, molar_mass, w, hydrate, x), q["molality"].value)
+    molality = np.where(weighed, molality_over_all_water(mass, water, molar_mass, w, hydrate, x), q["molality"].value)
 
-    # sensitivities; rows given as enthalpy have none to the weighings
-    h = by_heat / 1.0
+    # sensitivities; an enthalpy already reduced has none to the weighings
+    h, k = by_heat / 1.0, weighed / 1.0
     solvent = water + mass * (w * hydrate * MOLAR_MASS_OF_WATER / molar_mass + x)
     per_joule = h * molar_mass / (mass * w) / 1000  # kJ/mol a joule
-    molality_per_mass = h * molality / mass * water / solvent
-    molality_per_water = -h * molality / solvent
-    molality_per_purity = h * molality / w * (1 - mass * w * hydrate * MOLAR_MASS_OF_WATER / molar_mass / solvent)
-    molality_per_lot_water = -h * molality * mass / solvent
+    molality_per_mass = k * molality / mass * water / solvent
+    molality_per_water = -k * molality / solvent
+    molality_per_purity = k * molality / w * (1 - mass * w * hydrate * MOLAR_MASS_OF_WATER / molar_mass / solvent)
+    molality_per_lot_water = -k * molality * mass / solvent
     linked = ~_per_run(purity_given, campaign.sample, True).astype(bool)  # mass fraction = 1 − water there
     enthalpy_per_lot_water = np.where(linked, h * enthalpy / w, 0.0)
     molality_per_lot_water = molality_per_lot_water - np.where(linked, molality_per_purity, 0.0)
@@ -100,7 +101,7 @@ def reduce_runs(campaign: Campaign) -> ReducedRuns:
             molality_per_mass * _known(q["mass"].u),
             molality_per_water * _known(q["water"].u),
             zero,
-            np.where(by_heat, 0.0, _known(q["molality"].u)),
+            np.where(weighed, 0.0, _known(q["molality"].u)),
         ]
     )
 
@@ -119,7 +120,7 @@ def reduce_runs(campaign: Campaign) -> ReducedRuns:
         campaign.calorimeter, u_parasitic, [f"calorimeter {c}: parasitic heat" for c in calorimeter_names],
         "parasitic heat", -per_joule, zero,
     )  # fmt: skip
-    _atomic_weights(shared, campaign, h * enthalpy / molar_mass, -h * molality / molar_mass)
+    _atomic_weights(shared, campaign, h * enthalpy / molar_mass, -k * molality / molar_mass)
     sources, (loading_enthalpy, loading_molality) = shared.finish()
     temperature = q["temperature"]
     return ReducedRuns(
@@ -135,7 +136,7 @@ def reduce_runs(campaign: Campaign) -> ReducedRuns:
 
 def _atomic_weights(shared: Collector, campaign: Campaign, enthalpy: Floats, molality: Floats) -> None:
     """One source an element: M = Σ a A_r, so that ΔH/M and −m/M go with a·u(A_r)."""
-    if not enthalpy.any():
+    if not (enthalpy.any() or molality.any()):
         return
     weights = standard_atomic_weights()
     elements = sorted({element for salt in campaign.salts for element, _ in salt.elements})
@@ -143,7 +144,7 @@ def _atomic_weights(shared: Collector, campaign: Campaign, enthalpy: Floats, mol
     for element in elements:
         u = weights[element][1]
         of_run = atoms[element][campaign.salt]
-        code = np.where((of_run > 0) & (enthalpy != 0), 0, -1)
+        code = np.where((of_run > 0) & ((enthalpy != 0) | (molality != 0)), 0, -1)
         shared.group(
             code, np.array([u]), [f"atomic weight of {element}"], "atomic weights", enthalpy * of_run, molality * of_run
         )

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from functools import cached_property
+from typing import Any
 
 import numpy as np
 import pandas as pd
@@ -43,7 +44,7 @@ class Analysis:
 
     def __repr__(self) -> str:
         """One line for a notebook or a terminal."""
-        n, s = int(self.dilution.included.sum()), len(self.dilution.crystal)
+        n, s = int(self.dilution.layout.included.sum()), len(self.dilution.layout.crystal)
         return f"<Analysis of {self.campaign.title!r}: {s} salts from {n} of {len(self.campaign.runs)} runs>"
 
     @cached_property
@@ -106,7 +107,7 @@ class Analysis:
 def _salts(analysis: Analysis) -> pd.DataFrame:
     campaign, dilution, limits = analysis.campaign, analysis.dilution, analysis.dilution.extrapolation
     count = len(campaign.salts)
-    at = dilution.crystal
+    at = dilution.layout.crystal
     block = limits.problem.block_of_crystal
     random, shared = random_and_shared(dilution)
 
@@ -115,19 +116,18 @@ def _salts(analysis: Analysis) -> pd.DataFrame:
         out[at] = values
         return out
 
-    def spread_objects(values: list, empty: object) -> np.ndarray:
+    def spread_objects(values: list[Any], empty: object) -> np.ndarray:
         out = np.empty(count, dtype=object)
         out[:] = [empty] * count
         for i, value in zip(at.tolist(), values, strict=True):
             out[i] = value
         return out
 
-    included = dilution.included
+    included = dilution.layout.included
     runs = np.bincount(campaign.salt[included], minlength=count)
     low, high = np.full(count, np.inf), np.full(count, -np.inf)
     np.minimum.at(low, campaign.salt[included], analysis.reduced.molality.value[included])
     np.maximum.at(high, campaign.salt[included], analysis.reduced.molality.value[included])
-    batches = [size for c, size in zip(limits.problem.components, limits.sizes, strict=True) if c.group is not None]
     between = np.full(len(at), np.nan)
     for component, size in zip(limits.problem.components, limits.sizes, strict=True):
         if component.group is not None:
@@ -135,11 +135,10 @@ def _salts(analysis: Analysis) -> pd.DataFrame:
                 limits.problem.salt, minlength=len(at)
             )
             between = size * scale
-    assert len(batches) < 2
-    by_salt = analysis.comparison.set_index("salt")["verdict"] if len(analysis.comparison) else {}
+    by_salt = dict(zip(analysis.comparison["salt"], analysis.comparison["verdict"], strict=True))
     formulas = [s.formula for s in campaign.salts]
     verdict = [VERDICTS[by_salt[f]] if f in by_salt else "no reference" for f in formulas]
-    verdict = ["no limit" if i in dilution.no_limit else v for i, v in enumerate(verdict)]
+    verdict = ["no limit" if i in dilution.layout.no_limit else v for i, v in enumerate(verdict)]
     model = np.where(limits.problem.prior.published[block], "published parameters", "population").tolist()
     value, u = spread(limits.crystals.value), spread(limits.crystals.u)
     return pd.DataFrame(
@@ -167,7 +166,7 @@ def _salts(analysis: Analysis) -> pd.DataFrame:
             "heat_capacity_change": dilution.heat_capacity.value,
             "between_batch_sd": spread(between),
             "verdict": verdict,
-            "reason": [dilution.no_limit.get(i, "") for i in range(count)],
+            "reason": [dilution.layout.no_limit.get(i, "") for i in range(count)],
             "smoothed": spread_objects(smoothed_of(campaign, analysis.reduced, dilution), []),
             "recommended_value": value,
             "recommended_u": u,

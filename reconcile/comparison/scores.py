@@ -26,7 +26,7 @@ def zeta_score(
     >>> zeta_score(np.array([17.6]), np.array([0.03]), np.array([17.5]), np.array([0.04])).round(6)
     array([2.])
     """
-    return (value - assigned) / np.sqrt(u**2 + u_assigned**2 - 2 * np.asarray(covariance))
+    return np.asarray((value - assigned) / np.sqrt(u**2 + u_assigned**2 - 2 * np.asarray(covariance)))
 
 
 def e_n_score(value: Floats, expanded_u: Floats, assigned: Floats, expanded_u_assigned: Floats) -> Floats:
@@ -51,7 +51,12 @@ def verdict_of_zeta(zeta: Floats) -> NDArray[np.str_]:
 
 
 def compare(
-    salts: tuple[str, ...], value: Floats, u: Floats, expanded_u: Floats, published: pd.DataFrame, circular: Floats
+    salts: tuple[str, ...],
+    value: Floats,
+    u: Floats,
+    expanded_u: Floats,
+    published: pd.DataFrame,
+    circular: NDArray[np.bool_],
 ) -> pd.DataFrame:
     """Scores of the salts that have a published enthalpy of solution, both at infinite dilution.
 
@@ -87,4 +92,5 @@ def compare(
             "circular": circular,
         }
     )
-    return frame[np.isfinite(assigned) & np.isfinite(value)].reset_index(drop=True)
+    told: pd.DataFrame = frame[np.isfinite(assigned) & np.isfinite(value)].reset_index(drop=True)
+    return told

@@ -15,10 +15,10 @@ FEW = 6  # names printed before "and n more"
 
 
 def assumptions_table(campaign: Campaign, runs: ReducedRuns, dilution: Dilution, adjusted: Adjustment) -> pd.DataFrame:
-    """One row an assumption: text, whom it affects, what it contributes to u (root mean square over those salts, kJ/mol)."""
+    """One row an assumption: text, whom it affects, its part of u (root mean square over those salts, kJ/mol)."""
     limits = dilution.extrapolation
     contribution, lines = limits.crystals.budgets()
-    formulas = np.array([campaign.salts[i].formula for i in dilution.crystal.tolist()], dtype=object)
+    formulas = np.array([campaign.salts[i].formula for i in dilution.layout.crystal.tolist()], dtype=object)
     rows: list[tuple[str, str, float]] = [(r.text, r.affects, np.nan) for r in campaign.remarks]
 
     def cost(line: str, of: np.ndarray | None = None) -> float:
@@ -29,9 +29,9 @@ def assumptions_table(campaign: Campaign, runs: ReducedRuns, dilution: Dilution,
 
     for component, size in zip(limits.problem.components, limits.sizes, strict=True):
         if component.line == "repeatability":
-            text = f"{component.name}: nothing is stated, estimated from the scatter of the runs as {size:.3g} {component.unit}"
+            text = f"{component.name}: nothing is stated, estimated from the runs as {size:.3g} {component.unit}"
         elif component.line == "between batches":
-            text = f"scatter between batches, one effect a batch and salt: estimated as {size:.3g} times the runs' own scatter"
+            text = f"scatter between batches, one effect a batch and salt: estimated as {size:.3g} {component.unit}"
         else:
             unit = "J" if component.unit == "J" else "times what was stated"
             text = f"{component.name}: estimated as {size:.3g} {unit}"
@@ -39,7 +39,10 @@ def assumptions_table(campaign: Campaign, runs: ReducedRuns, dilution: Dilution,
     block = limits.problem.block_of_crystal
     by_population = ~limits.problem.prior.published[block]
     if by_population.any():
-        text = "no published dilution parameters used: prior is the population of published sets of the charge type, with heavy tails"
+        text = (
+            "no published dilution parameters used: the prior is the population of published sets of the charge type, "
+            "with heavy tails"
+        )
         total = np.hypot(
             np.hypot(
                 cost("population of dilution parameters", by_population), cost("mean of the population", by_population)
@@ -48,22 +51,25 @@ def assumptions_table(campaign: Campaign, runs: ReducedRuns, dilution: Dilution,
         )
         rows.append((text, _some(formulas[by_population]), float(total)))
     if (~by_population).any():
-        text = "published dilution parameters hold within 0.1 kJ/mol at 1 mol/kg per unit of ½Σνz², where their source states nothing"
+        text = (
+            "published dilution parameters hold within 0.1 kJ/mol at 1 mol/kg per unit of ½Σνz², where their source "
+            "states nothing"
+        )
         rows.append((text, _some(formulas[~by_population]), cost("published dilution parameters", ~by_population)))
     rows.append(
         (
-            "Debye–Hückel slope computed from water's density and permittivity; published evaluations differ by 0.7 % at 25 °C",
+            "Debye–Hückel slope computed from density and permittivity of water; published evaluations differ by 0.7 %",
             "all salts",
             cost("Debye–Hückel slope"),
         )
     )
     away = np.abs(runs.temperature - campaign.reference_temperature) > 1e-9
-    if (away & dilution.included).any():
-        salts = np.unique(campaign.salt[away & dilution.included])
+    if (away & dilution.layout.included).any():
+        salts = np.unique(campaign.salt[away & dilution.layout.included])
         for held, text in (
             (
                 True,
-                "corrected to the reference temperature with tabulated ΔsolCp°, its own slope with temperature taken as 0",
+                "corrected to the reference temperature with tabulated ΔsolCp°, its slope with temperature taken as 0",
             ),
             (False, "no ΔsolCp° is held: a typical −130 ± 60 J/(K mol) per unit of ½Σνz² is used"),
         ):
@@ -76,12 +82,15 @@ def assumptions_table(campaign: Campaign, runs: ReducedRuns, dilution: Dilution,
         warm = contribution[:, lines.index("dilution away from 298.15 K")] > 0
         rows.append((text, _some(formulas[warm]), cost("dilution away from 298.15 K", warm)))
     if "equation at high ionic strength" in lines:
-        text = "above an ionic strength of 1 mol/kg the equation of the dilution is taken to fail by 0.05·½Σνz²·(I^1.5, I^2.5/10) kJ/mol"
+        text = (
+            "where a solution reaches an ionic strength above 1 mol/kg the equation is taken to fail by "
+            "0.05·½Σνz²·(I^1.5, I^2.5/10) kJ/mol"
+        )
         high = contribution[:, lines.index("equation at high ionic strength")] > 0
         rows.append((text, _some(formulas[high]), cost("equation at high ionic strength", high)))
     if limits.alone:
         labels = campaign.runs.keys["run"]
-        names = np.array([labels.labels[labels.code[dilution.row[i]]] for i in limits.alone], dtype=object)
+        names = np.array([labels.labels[labels.code[dilution.layout.row[i]]] for i in limits.alone], dtype=object)
         text = "left out while the scatter was estimated, because they stand alone in their solution (nowhere else)"
         rows.append((text, f"runs {_some(names)}", np.nan))
     estimated = adjusted.network.references["status"].isin(["recalled"]).sum()
@@ -97,8 +106,8 @@ def assumptions_table(campaign: Campaign, runs: ReducedRuns, dilution: Dilution,
 
 
 def _some(names: np.ndarray) -> str:
-    names = [str(n) for n in names]
-    return ", ".join(names[:FEW]) + (f" and {len(names) - FEW} more" if len(names) > FEW else "")
+    every = [str(n) for n in names]
+    return ", ".join(every[:FEW]) + (f" and {len(every) - FEW} more" if len(every) > FEW else "")
 
 
 def sources_table(
@@ -112,9 +121,9 @@ def sources_table(
     references = adjusted.network.references.assign(unit="kJ/mol")
     references["used_for"] = np.where(references["quantity"] == "enthalpy of solution", "cycles and scores", "cycles")
     tables = [references]
-    here = dilution.block
+    here = dilution.layout.block
     used = [
-        dilution.electrolytes.name[here[b]]
+        dilution.layout.electrolytes.name[here[b]]
         for b in np.flatnonzero(dilution.extrapolation.problem.prior.published).tolist()
     ]
     if used:
@@ -127,7 +136,7 @@ def sources_table(
                 table[column] = frame[column].to_numpy(object)
             tables.append(table[np.isfinite(values)].assign(used_for="dilution (prior)"))
     away = np.abs(campaign.runs.quantities["temperature"].value - campaign.reference_temperature) > 1e-9
-    salts = np.unique(campaign.salt[away & dilution.included])
+    salts = np.unique(campaign.salt[away & dilution.layout.included])
     salts = salts[dilution.heat_capacity.held[salts]]
     if salts.size:
         frame = heat_capacities.iloc[salts]

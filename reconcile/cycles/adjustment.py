@@ -15,7 +15,8 @@ from reconcile.statistics import LinearFit, least_squares
 
 Floats = NDArray[np.float64]
 
-BAARDA = 4.132  # δ₀ for level 0.001 and power 0.8: W. Baarda, A testing procedure for use in geodetic networks (1968), from memory
+# δ₀ for level 0.001 and power 0.8: W. Baarda, A testing procedure for use in geodetic networks (1968), from memory
+BAARDA = 4.132
 CLOSES, QUESTIONABLE = 2.0, 3.0  # |misclosure|/u, the limits of ζ in ISO 13528
 WEAK = 10.0  # times the laboratory's own u: a reference side worse than that tests nothing
 
@@ -34,7 +35,7 @@ class Adjustment:
     cycles: pd.DataFrame
 
     def pad(self, shifts: Floats) -> sparse.csr_array:
-        """Loadings on the salts (S, h) as loadings on all observations: a hypothesis on runs does not touch references."""
+        """Loadings on the salts (S, h) as loadings on all observations: references are not touched."""
         below = sparse.csr_array((len(self.network.references), shifts.shape[1]))
         return sparse.csr_array(sparse.vstack([sparse.csr_array(shifts), below], format="csr"))
 
@@ -49,7 +50,8 @@ def adjust(salts: tuple[str, ...], net: Network) -> Adjustment:
 
     Returns
     -------
-    Adjustment. For observation e: w = eᵀPv/√(eᵀPe), redundancy (V P)_ee, smallest detectable error δ₀/√(eᵀPe), with P the
+    Adjustment. For observation e: w = eᵀPv/√(eᵀPe), redundancy (V P)_ee, smallest detectable error δ₀/√(eᵀPe), with
+    P the
     projector of the correlated observations (Baarda 1968; the short forms v/σ_v hold for uncorrelated ones only).
     """
     fit = least_squares(net.observed, net.design)

@@ -47,9 +47,10 @@ def network(salts: Sequence[Salt], measured: Ledger, formation: pd.DataFrame, pu
         Those of the laboratory that have a standard enthalpy.
     measured : Ledger (S,)
     formation : DataFrame
-        One whole set: species, phase, value, u, circular, source, year, status.
+        One whole set: species, identity, phase, value, u, circular, source, year, status.
     published : DataFrame (S rows)
-        Enthalpies of solution at infinite dilution, NaN where none; `independent` marks those not computed from the set.
+        Enthalpies of solution at infinite dilution, NaN where none; `independent` marks those not computed from the
+        set.
 
     Returns
     -------
@@ -57,8 +58,8 @@ def network(salts: Sequence[Salt], measured: Ledger, formation: pd.DataFrame, pu
     """
     ions = formation[formation["phase"] == "aq"].set_index("species")
     water = formation[(formation["phase"] == "l") & (formation["species"] == "H2O")].set_index("species")
-    crystals = formation[formation["phase"] == "cr"].set_index("species")
-    crystals = crystals.reindex([s.formula for s in salts])
+    crystals = formation[formation["phase"] == "cr"].set_index("identity")
+    crystals = crystals.reindex([s.identity for s in salts]).set_index(pd.Index([s.formula for s in salts]))
     reached = np.array(
         [all(ion in ions.index for ion, _ in s.ions) and (s.water == 0 or len(water) > 0) for s in salts], dtype=bool
     )

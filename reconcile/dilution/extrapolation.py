@@ -39,10 +39,10 @@ class Extrapolation:
     interval: Floats  # (C, 2), kJ/mol
     coverage_factor: Floats  # (C,)
     degrees_of_freedom: Floats  # (C,)
-    solution: Floats  # (B, 12), scaled parameters and further terms
-    moved: Floats  # (B, 12), the same less the prior's mean
-    solution_covariance: Floats  # (B, 12, 12)
-    with_solution: Floats  # (C, 12) covariance of each crystal with them, within the electrolyte
+    solution: Floats  # (B, k), scaled parameters and further terms
+    moved: Floats  # (B, k), the same less the prior's mean
+    solution_covariance: Floats  # (B, k, k)
+    with_solution: Floats  # (C, k) covariance of each crystal with them, within the electrolyte
     prior_share: Floats  # (C,)
     prior_conflict_p: Floats  # (B,)
 
@@ -61,7 +61,7 @@ def solve(
     problem: Problem, sizes: Floats, with_nuisance: bool = False, sweeps: int = SWEEPS
 ) -> tuple[LinearFit, Components, float]:
     """Fit with the mixture's weights swept and frozen; also the log-likelihood of the sizes."""
-    precision = np.linalg.inv(problem.prior.covariance)
+    precision = problem.prior.precision
     likelihood = 0.0
     for sweep in range(sweeps + 1):
         fit = problem.fit(sizes, precision, with_nuisance)
@@ -74,14 +74,14 @@ def solve(
 
 
 def log_likelihood(problem: Problem, sizes: Floats) -> float:
-    """Restricted log-likelihood of the components' sizes under the heavy-tailed prior; −inf where a run has no variance."""
+    """Restricted log-likelihood of the components' sizes, heavy-tailed prior; −inf where a run has no variance."""
     variance = problem.observed.private_variance.copy()
     for component, size in zip(problem.components, sizes, strict=True):
         if component.group is None:
             variance += (size * component.scale) ** 2
     if not (variance > 0).all():
         return -np.inf
-    precision = np.linalg.inv(problem.prior.covariance)
+    precision = problem.prior.precision
     fit = problem.fit(sizes, precision, with_nuisance=True)
     return fit.log_restricted_likelihood + weigh(problem, fit, precision).evidence
 
@@ -127,14 +127,14 @@ def extrapolate(problem: Problem, gains: sparse.csr_array) -> Extrapolation:
 
     Returns
     -------
-    Extrapolation. The variance components are estimated with what the screen found in the model, then frozen; the interval
-    is averaged over their likelihood and over the prior's components.
+    Extrapolation. The variance components are estimated with what the screen found in the model, then frozen; the
+    interval is averaged over their likelihood and over the prior's components.
     """
     sample = _enough(problem)
     whole = sample is problem
     found, sizes, alone = screened(sample, estimate_sizes, gains if whole else sparse.csr_array((len(sample.salt), 0)))
     fit, parts, _ = solve(problem, sizes)
-    sample_fit = fit if whole else sample.fit(sizes, np.linalg.inv(sample.prior.covariance))
+    sample_fit = fit if whole else sample.fit(sizes, sample.prior.precision)
     freedom = scatter_freedom(sample, sizes, sample_fit)
     scale = 1.0 if whole else len(problem.salt) / len(sample.salt)
 
@@ -214,7 +214,7 @@ def _sensitivity(problem: Problem, fit: LinearFit) -> tuple[Floats, Floats]:
     columns = np.column_stack([crystals, problem.parameter_column[block]])
     both = fit.block_covariance(crystals, columns)
     covariance, _ = solution_estimate(problem, fit, 4)
-    return -np.linalg.solve(covariance[block], both[:, 1:, None])[:, :, 0], both[:, 0]
+    return np.asarray(-np.linalg.solve(covariance[block], both[:, 1:, None])[:, :, 0]), both[:, 0]
 
 
 def _prior_share(problem: Problem, fit: LinearFit, parts: Components) -> Floats:
@@ -225,7 +225,7 @@ def _prior_share(problem: Problem, fit: LinearFit, parts: Components) -> Floats:
     direction = np.einsum("cij,cj->ci", covariance[block], sensitivity)
     whole = np.einsum("ci,ci->c", direction, sensitivity)
     by_prior = np.einsum("ci,cij,cj->c", direction, parts.precision[block], direction)
-    return np.clip(np.divide(by_prior, whole, out=np.ones_like(whole), where=whole > 0), 0, 1)
+    return np.asarray(np.clip(np.divide(by_prior, whole, out=np.ones_like(whole), where=whole > 0), 0, 1))
 
 
 def _conflict(parts: Components, problem: Problem) -> Floats:

@@ -23,7 +23,8 @@ LINES = (AWAY_LINE,) * 6 + (STRONG_LINE,) * 2
 def further_terms(molality: Floats, temperature: Floats, charge_factor: Floats) -> Floats:
     """Eight further terms of L_φ, each scaled to a prior of mean 0 and sd 1: array (n, 8), kJ/mol.
 
-    Three shapes, m, m/(1 + √m)² and m²/10, each with the temperature difference and with its square (over 60 K), and the
+    Three shapes, m, m/(1 + √m)² and m²/10, each with the temperature difference and with its square (over 60 K), and
+    the
     error of the equation on I^1.5 and on I^2.5/10. Two shapes linear in the temperature alone do not follow NaCl to
     6 mol/kg and 59 °C (Hubert et al. 1997): with them the runs at three temperatures together gave 4.05 kJ/mol where
     3.88 is right.
@@ -43,17 +44,17 @@ def further_terms(molality: Floats, temperature: Floats, charge_factor: Floats) 
     return np.hstack([drift, bend, equation])
 
 
-def terms_needed(terms: Floats, molality: Floats, what: Electrolytes, block: Integers) -> Booleans:
-    """Which of the terms each electrolyte has, (B, 8): those of temperature where a run is away, the last two above STRONG.
+def terms_needed(temperature: Floats, molality: Floats, what: Electrolytes, block: Integers) -> Booleans:
+    """Which of the terms each electrolyte has, (B, 8): of temperature where a run is away, the last two above STRONG.
 
     Parameters
     ----------
-    terms : array (n, 8)
-    molality : array (n,), mol/kg
+    temperature, molality : array (n,)
+        K and mol/kg.
     what : Electrolytes of B blocks
     block : int array (n,)
     """
     warm, strong = np.zeros(len(what.name), bool), np.zeros(len(what.name), bool)
-    np.logical_or.at(warm, block, terms[:, 0] != 0)
+    np.logical_or.at(warm, block, np.abs(temperature - OF_PARAMETERS) > 1e-9)
     np.logical_or.at(strong, block, molality * what.composition.charge_factor[block] > STRONG)
     return np.hstack([np.repeat(warm[:, None], 6, axis=1), np.repeat(strong[:, None], 2, axis=1)])

@@ -32,8 +32,10 @@ class Components:
 def weigh(problem: Problem, fit: LinearFit, precision: Floats) -> Components:
     """Weights and maps of the prior's components, from a fit under some prior precision.
 
-    With A what the runs say of the parameters (all else eliminated), g = A × their own estimate and P the prior precision
-    at scale 1, component c has (A + P/c)⁻¹g and log marginal ½[log|P/c| − log|A + P/c| + gᵀ(A + P/c)⁻¹g]. The weighted map
+    With A what the runs say of the parameters (all else eliminated), g = A × their own estimate and P the prior
+    precision
+    at scale 1, component c has (A + P/c)⁻¹g and log marginal ½[log|P/c| − log|A + P/c| + gᵀ(A + P/c)⁻¹g]. The
+    weighted map
     Σ w (A + P/c)⁻¹ is the map of one normal prior of precision (Σ w (A + P/c)⁻¹)⁻¹ − A: with it the fit stays linear.
 
     Parameters
@@ -64,13 +66,13 @@ def weigh(problem: Problem, fit: LinearFit, precision: Floats) -> Components:
     return Components(weight, moved + shift[:, None], maps, effective, information, score, float(evidence.sum()))
 
 
-def solution_estimate(problem: Problem, fit: LinearFit, count: int = 12) -> tuple[Floats, Floats]:
-    """Covariance (B, k, k) of the first k of each block's parameters and further terms, and their values (B, k).
+def solution_estimate(problem: Problem, fit: LinearFit, count: int | None = None) -> tuple[Floats, Floats]:
+    """Covariance (B, k, k) of the first k (all) of each block's parameters and further terms, and their values (B, k).
 
     The wide sources are held. A term that a block does not have: value 0, variance 1, tied to nothing.
     """
     column = problem.solution_column[:, :count]
-    blocks = len(column)
+    blocks, count = column.shape
     exists = column >= 0
     rows = column[exists]
     others = np.repeat(column, exists.sum(axis=1), axis=0)

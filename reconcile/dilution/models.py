@@ -89,7 +89,7 @@ def limiting_law(molality: ArrayLike, charge_factor: ArrayLike, slope: ArrayLike
     array([0.0001986])
     """
     factor = np.asarray(charge_factor, float)
-    return np.asarray(slope) * factor / B * np.log1p(B * np.sqrt(factor * np.asarray(molality, float)))
+    return np.asarray(np.asarray(slope) * factor / B * np.log1p(B * np.sqrt(factor * np.asarray(molality, float))))
 
 
 def empirical_terms(

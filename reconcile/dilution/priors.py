@@ -46,6 +46,11 @@ class Prior:
     group_names: tuple[str, ...]
     group_root: Floats  # (G, 4, 3): root of the covariance of that mean, a source that all members share
 
+    @property
+    def precision(self) -> Floats:
+        """Inverse covariance of the first component, (B, 4, 4)."""
+        return np.asarray(np.linalg.inv(self.covariance))
+
 
 def published_sets(frame: pd.DataFrame, slope: float, leave_out: frozenset[str] = frozenset()) -> PublishedSets:
     """Scale the published sets and find their populations.
@@ -55,8 +60,8 @@ def published_sets(frame: pd.DataFrame, slope: float, leave_out: frozenset[str] 
     frame : DataFrame
         As `reference.dilution_parameters()` gives it.
     slope : float
-        The A_H, kJ kg^½ mol^−3/2, that this program uses at 298.15 K. A set fitted with another slope is moved by what best
-        makes up for the difference between 0.02 mol/kg and the end of its range.
+        The A_H, kJ kg^½ mol^−3/2, that this program uses at 298.15 K. A set fitted with another slope is moved by
+        what best makes up for the difference between 0.02 mol/kg and the end of its range.
     leave_out : set of str
         Electrolytes kept out of the populations, for trials.
     """

@@ -31,16 +31,17 @@ class Problem:
     block: Integers  # (n,) electrolyte of each row
     crystals: int
     block_of_crystal: Integers
-    basis: Floats  # (n, 12): the four terms of the parameters, then the eight further terms
+    basis: Floats  # (n, k): the four terms of the parameters, then the further terms that are needed
     prior: Prior
     components: tuple[Component, ...]
     nuisance: sparse.csr_array  # (n, h) what the screen found, in the model while components are estimated
     has_fourth: NDArray[np.bool_]  # (B,) β⁽²⁾ is a parameter there
-    has_term: NDArray[np.bool_]  # (B, 8) further terms
+    has_term: NDArray[np.bool_]  # (B, k − 4) further terms
+    term_lines: tuple[str, ...]  # (k − 4,) their budget lines
 
     @cached_property
     def solution_column(self) -> Integers:
-        """Unknown's position of each block's parameters and further terms, (B, 12), −1 where there is none."""
+        """Unknown's position of each block's parameters and further terms, (B, k), −1 where there is none."""
         parameters = np.ones((len(self.has_fourth), 4), bool)
         parameters[:, 3] = self.has_fourth
         exists = np.hstack([parameters, self.has_term])
@@ -81,17 +82,18 @@ class Problem:
             sparse.csr_array(self.nuisance[rows]),
             self.has_fourth[chosen],
             self.has_term[chosen],
+            self.term_lines,
         )
 
     def fit(self, sizes: Floats, precision: Floats, with_nuisance: bool = False) -> LinearFit:
         """Solve for given sizes of the variance components and a prior precision (B, 4, 4) of each block."""
         runs = self._runs(sizes, with_nuisance)
         rows, block, column = self._prior_places
-        wide = np.zeros((len(precision), 12, 12))  # the further terms: mean 0, sd 1, independent
-        wide[:, range(12), range(12)] = 1.0
+        count = self.solution_column.shape[1]
+        wide = np.tile(np.eye(count), (len(precision), 1, 1))  # the further terms: mean 0, sd 1, independent
         wide[:, :4, :4] = precision
-        root = np.linalg.cholesky(wide).transpose(0, 2, 1)  # upper: precision = rootᵀ root
-        entries = root[block, column]  # (rows, 12)
+        root = np.asarray(np.linalg.cholesky(wide).transpose(0, 2, 1))  # upper: precision = rootᵀ root
+        entries = root[block, column]  # (rows, k)
         to = self.solution_column[block]
         exists = (to >= 0) & (entries != 0)
         prior_design = sparse.csr_array(
@@ -113,7 +115,7 @@ class Problem:
         column = self.solution_column
         out = np.empty(self.unknowns, dtype=np.int64)
         out[: self.crystals] = self.block_of_crystal
-        block = np.repeat(np.arange(len(column)), 12).reshape(column.shape)
+        block = np.repeat(np.arange(len(column)), column.shape[1]).reshape(column.shape)
         out[column[column >= 0]] = block[column >= 0]
         return out
 
@@ -147,12 +149,13 @@ class Problem:
         return runs
 
     def _with_prior(self, runs: Ledger, root: Floats, rows: Integers, block: Integers, column: Integers) -> Ledger:
-        """Prior rows under the runs: value 0 (the mean is taken off), unit variance, error of the population's mean shared."""
+        """Prior rows under the runs: value 0 (mean taken off), unit variance, error of the population's mean shared."""
         count = len(rows)
+        of_column = [0, 0, 0, 0] + [2 + (line == STRONG_LINE) for line in self.term_lines]
         lines = runs.lines + PRIOR_LINES
         private = np.zeros((len(runs) + count, len(lines)))
         private[: len(runs), : len(runs.lines)] = runs.private
-        line = np.where(column < 4, np.where(self.prior.published[block], 0, 1), np.where(column < 10, 2, 3))
+        line = np.where(column < 4, np.where(self.prior.published[block], 0, 1), np.array(of_column)[column])
         private[len(runs) + rows, len(runs.lines) + line] = 1.0
         groups = [i for i in range(len(self.prior.group_names)) if (self.prior.group == i).any()]
         names = [
@@ -220,9 +223,8 @@ def observed_part(
     m, away = molality.value, temperature - reference_temperature
 
     def relative(at: Floats) -> Floats:
-        return limiting_law(at, one.charge_factor, slope) + np.einsum(
-            "nj,nj->n", empirical_terms(at, temperature, one), mean[block]
-        )
+        terms = np.einsum("nj,nj->n", empirical_terms(at, temperature, one), mean[block])
+        return np.asarray(limiting_law(at, one.charge_factor, slope) + terms)
 
     step = 1e-4 * m
     derivative = (relative(m + step) - relative(m - step)) / (2 * step)

@@ -80,7 +80,8 @@ def components_of(
 
     Returns
     -------
-    tuple of Component. Runs with nothing stated: a constant part (J where amounts are known, else kJ/mol) and, where the
+    tuple of Component. Runs with nothing stated: a constant part (J where amounts are known, else kJ/mol) and, where
+    the
     runs can tell it from that, a part proportional to the enthalpy. Runs with a statement: scatter beyond it, as a
     multiple of it. Between batches: one effect a batch and salt, on the scale of the runs' own scatter.
     """

@@ -1,4 +1,4 @@
-"""A screen for runs that stand alone, gains and wrong lots, so that they do not pass for scatter while scatter is estimated."""
+"""A screen for runs that stand alone, gains and wrong lots, which else would pass for scatter."""
 
 from __future__ import annotations
 
@@ -36,7 +36,9 @@ def scatter_freedom(problem: Problem, sizes: Floats, fit: LinearFit) -> float:
     if not (part > 1e-6).any():
         return np.inf
     redundancy = fit.single_observations()[1][:n] * total
-    return float(max(redundancy @ part, 1e-9) / np.average(part**2, weights=np.maximum(part, 1e-12)))
+    weight = np.maximum(part, 1e-12)
+    square = float((weight * part**2).sum() / weight.sum())
+    return max(float(redundancy @ part), 1e-9) / square
 
 
 def tail(statistic: Floats, freedom: float) -> Floats:

@@ -1,4 +1,4 @@
-"""A campaign's reduced runs laid out as one dilution problem, and solved."""
+"""Every salt at infinite dilution, and every run corrected to it."""
 
 from __future__ import annotations
 
@@ -11,42 +11,39 @@ from scipy import sparse
 from reconcile.calorimetry import ReducedRuns
 from reconcile.campaign import Campaign
 from reconcile.chemistry import water
-from reconcile.dilution.electrolytes import Electrolytes, electrolytes, why_no_limit
 from reconcile.dilution.extrapolation import Extrapolation, extrapolate
-from reconcile.dilution.further_terms import further_terms, terms_needed
+from reconcile.dilution.further_terms import further_terms
+from reconcile.dilution.layout import Layout, lay_out, screened_for
 from reconcile.dilution.models import empirical_terms, limiting_law
-from reconcile.dilution.priors import PublishedSets, prior_of
-from reconcile.dilution.problem import Problem, observed_part
-from reconcile.dilution.scatter import components_of
-from reconcile.dilution.temperature import U_CURVATURE, HeatCapacityChange
-from reconcile.statistics import Collector, Ledger
+from reconcile.dilution.priors import PublishedSets
+from reconcile.dilution.temperature import HeatCapacityChange
 
 Floats = NDArray[np.float64]
 Integers = NDArray[np.int64]
-Booleans = NDArray[np.bool_]
 
 
 @dataclass(frozen=True, slots=True, eq=False)
-class Dilution:
-    """Every salt at infinite dilution, every run corrected to it."""
+class Corrected:
+    """Runs at infinite dilution and the reference temperature, kJ/mol; NaN where the salt has no limit."""
 
-    extrapolation: Extrapolation
-    electrolytes: Electrolytes  # of all salts of the campaign
-    block: Integers  # (B of the fit,) position in electrolytes
-    crystal: Integers  # (C,) position in the campaign's salts
-    row: Integers  # (rows of the fit,) position in the campaign's runs
-    included: Booleans  # (n,)
-    reason: NDArray[np.object_]  # (n,) why a run is not in the fit
-    no_limit: dict[int, str]  # salt ─► why it has no standard enthalpy
-    correction: Floats  # (n,) kJ/mol: standard enthalpy of a run less its enthalpy
-    standard: Ledger  # (n,) kJ/mol: each run at infinite dilution and the reference temperature
+    correction: Floats  # (n,) standard enthalpy less enthalpy
+    standard_enthalpy: Floats  # (n,)
+    u: Floats  # (n,) run and correction taken as independent
     standardised_residual: Floats  # (n,) NaN outside the fit
+
+
+@dataclass(frozen=True, eq=False)
+class Dilution:
+    """Every salt at infinite dilution."""
+
+    layout: Layout
+    extrapolation: Extrapolation
     heat_capacity: HeatCapacityChange  # (S,)
     slope: float  # A_H at the reference temperature, kJ kg^½ mol^−3/2
 
     def loadings(self, of_runs: sparse.csr_array) -> sparse.csr_array:
         """Loadings of hypotheses on the campaign's runs (n, h) as loadings on the fit's observations."""
-        return self.extrapolation.pad(of_runs[self.row])
+        return self.extrapolation.pad(of_runs[self.layout.row])
 
 
 def dilute(campaign: Campaign, runs: ReducedRuns, sets: PublishedSets, heat_capacity: HeatCapacityChange) -> Dilution:
@@ -62,116 +59,38 @@ def dilute(campaign: Campaign, runs: ReducedRuns, sets: PublishedSets, heat_capa
     Returns
     -------
     Dilution
-    """
-    what = electrolytes(campaign.salts)
-    no_limit = {i: text for i, salt in enumerate(campaign.salts) if (text := why_no_limit(salt))}
-    included, reason = _included(campaign, runs, no_limit)
-    for i in set(range(len(campaign.salts))) - set(campaign.salt[included].tolist()) - set(no_limit):
-        no_limit[i] = "none of its runs is included"
-    row = np.flatnonzero(included)
-    crystal, salt = np.unique(campaign.salt[row], return_inverse=True)
-    used, block_of_crystal = np.unique(what.of_salt[crystal], return_inverse=True)
-    block = block_of_crystal[salt]
-    here = Electrolytes(
-        tuple(what.name[i] for i in used.tolist()), block_of_crystal, tuple(what.charge_type[i] for i in used.tolist()),
-        what.composition.of(used),
-    )  # fmt: skip
-    allowed = np.ones(len(used), bool)
-    np.logical_and.at(allowed, block_of_crystal, campaign.published_dilution[crystal])
-    prior = prior_of(here, sets, allowed)
 
-    temperature = runs.temperature
-    slope, relative_u = water.debye_hueckel_slope(temperature), water.slope_relative_u(temperature)
-    all_blocks = np.full(len(what.name), 0)
-    all_blocks[used] = np.arange(len(used))
-    block_of_run = all_blocks[what.of_salt[campaign.salt]]
-    observed, basis = observed_part(
-        runs.enthalpy, runs.molality, temperature, runs.u_temperature, here, block_of_run, prior.mean, slope, relative_u,
-        heat_capacity.value[campaign.salt], campaign.reference_temperature,
-    )  # fmt: skip
-    observed = _to_reference_temperature(
-        observed, campaign, runs, here.composition.charge_factor[block_of_run], heat_capacity
+    Raises
+    ------
+    ValueError
+        If no run is left to fit.
+    """
+    layout = lay_out(campaign, runs, sets, heat_capacity)
+    found = extrapolate(layout.problem, sparse.csr_array(screened_for(campaign, runs)[layout.row]))
+    slope = float(water.debye_hueckel_slope(np.array([campaign.reference_temperature]))[0])
+    return Dilution(layout, found, heat_capacity, slope)
+
+
+def corrected_runs(campaign: Campaign, runs: ReducedRuns, dilution: Dilution) -> Corrected:
+    """The runs, one by one, at infinite dilution and the reference temperature."""
+    at, found = dilution.layout, dilution.extrapolation
+    limit = np.isin(campaign.salt, at.crystal)
+    standard = at.observed.value - np.einsum("nj,nj->n", at.basis, found.moved[at.block_of_run])
+    variance = at.observed.private_variance + at.observed.shared_variance
+    variance += np.einsum("ni,nij,nj->n", at.basis, found.solution_covariance[at.block_of_run], at.basis)
+    for component, size in zip(found.problem.components, found.sizes, strict=True):
+        variance[at.row] += (size * component.scale) ** 2
+    n = len(at.row)
+    score, information = (part[:n] for part in found.fit.single_observations())
+    visible = information > 1e-9 * found.fit.weight[:n]
+    z = np.full(len(standard), np.nan)
+    z[at.row[visible]] = score[visible] / np.sqrt(information[visible])
+    return Corrected(
+        np.where(limit, standard - runs.enthalpy.value, np.nan),
+        np.where(limit, standard, np.nan),
+        np.where(limit, np.sqrt(variance), np.nan),
+        z,
     )
-    stated = np.sqrt(observed.private_variance)
-    between = campaign.between_batches[campaign.salt]
-    components = components_of(
-        runs.enthalpy.value[row], runs.amount[row], stated[row], runs.unstated[row], salt,
-        campaign.batch.code[row], between[row],
-    )  # fmt: skip
-    extra = further_terms(runs.molality.value, temperature, here.composition.charge_factor[block_of_run])
-    basis = np.hstack([basis, extra])
-    problem = Problem(
-        observed.take(row), salt, block, len(crystal), block_of_crystal, basis[row], prior, components,
-        sparse.csr_array((len(row), 0)), here.composition.alpha2 > 0, terms_needed(extra[row], runs.molality.value[row], here, block),
-    )  # fmt: skip
-    found = extrapolate(problem, sparse.csr_array(screened_for(campaign, runs)[row]))
-
-    moved = np.einsum("nj,nj->n", basis, found.moved[block_of_run])
-    correction = observed.value - moved - runs.enthalpy.value
-    by_terms = np.sqrt(np.einsum("ni,nij,nj->n", basis, found.solution_covariance[block_of_run], basis))
-    standard = Ledger(observed.value - moved, observed.private, observed.lines, observed.loading, observed.sources)
-    standard = standard.with_private(by_terms[:, None], ["dilution of the run"])
-    for component, size in zip(components, found.sizes, strict=True):
-        scale = np.zeros(len(included))
-        scale[row] = size * component.scale
-        standard = standard.with_private(scale[:, None], [component.line])
-    score, information = found.fit.single_observations()
-    z = np.full(len(included), np.nan)
-    n = len(row)
-    visible = information[:n] > 1e-9 * found.fit.weight[:n]
-    z[row[visible]] = score[:n][visible] / np.sqrt(information[:n][visible])
-    limit = np.isin(campaign.salt, crystal)
-    return Dilution(
-        found, what, used, crystal, row, included, reason, no_limit,
-        np.where(limit, correction, np.nan),
-        Ledger(np.where(limit, standard.value, np.nan), standard.private, standard.lines, standard.loading, standard.sources),
-        z, heat_capacity, float(water.debye_hueckel_slope(np.array([campaign.reference_temperature]))[0]),
-    )  # fmt: skip
-
-
-def screened_for(campaign: Campaign, runs: ReducedRuns) -> sparse.csr_array:
-    """What the screen looks for beside single runs: a gain of each calorimeter and a wrong composition of each lot.
-
-    Returns
-    -------
-    sparse (n, calorimeters + lots): the run's enthalpy in the columns of its calorimeter and of its lot
-    """
-    parts = []
-    for code, members in ((campaign.calorimeter, len(campaign.calorimeters)), (campaign.sample, len(campaign.samples))):
-        named = np.flatnonzero(code >= 0)
-        shape = (len(campaign.runs), members)
-        parts.append(sparse.csr_array((runs.enthalpy.value[named], (named, code[named])), shape=shape))
-    return sparse.csr_array(sparse.hstack(parts, format="csr"))
-
-
-def _included(campaign: Campaign, runs: ReducedRuns, no_limit: dict[int, str]) -> tuple[Booleans, NDArray[np.object_]]:
-    reason = np.array(campaign.reason, dtype=object)
-    included = campaign.included.copy()
-    above = included & (runs.molality.value > campaign.max_molality[campaign.salt])
-    reason[above] = "above max_molality"
-    unlimited = included & ~above & np.isin(campaign.salt, sorted(no_limit))
-    reason[unlimited] = "its salt has no limit at infinite dilution"
-    return included & ~above & ~unlimited, reason
-
-
-def _to_reference_temperature(
-    observed: Ledger, campaign: Campaign, runs: ReducedRuns, charge_factor: Floats, change: HeatCapacityChange
-) -> Ledger:
-    """Add the sources of the way to the reference temperature at infinite dilution."""
-    collected = Collector(len(observed))
-    away = runs.temperature - campaign.reference_temperature
-    away = np.where(np.abs(away) > 1e-9, away, 0.0)
-    names = [s.formula for s in campaign.salts]
-    if away.any():
-        salt = np.where(away != 0, campaign.salt, -1)
-        line = "heat capacity of dissolution"
-        collected.group(salt, change.u, [f"ΔsolCp° of {s}" for s in names], line, -away / 1000)
-        first = np.zeros(len(names))
-        first[campaign.salt] = charge_factor
-        curvature = [f"ΔsolCp° of {s}: its change with temperature" for s in names]
-        collected.group(salt, U_CURVATURE * first, curvature, line, -(away**2) / 2000)
-    sources, (loading,) = collected.finish()
-    return observed.with_sources(loading, sources) if len(sources) else observed
 
 
 def model_values(
@@ -183,18 +102,17 @@ def model_values(
     ----------
     dilution : Dilution
     position : int array (k,)
-        Of each point's crystal in dilution.crystal.
+        Of each point's crystal in the layout's crystals.
     molality : array (k,), mol/kg
     reference_temperature : float, K
     """
     found = dilution.extrapolation
     block = found.problem.block_of_crystal[position]
-    what = dilution.electrolytes.composition.of(dilution.block[block])
+    what = dilution.layout.electrolytes.composition.of(dilution.layout.block[block])
     law = limiting_law(molality, what.charge_factor, dilution.slope)
     temperature = np.full(len(molality), reference_temperature)
-    basis = np.hstack(
-        [empirical_terms(molality, temperature, what), further_terms(molality, temperature, what.charge_factor)]
-    )
+    further = further_terms(molality, temperature, what.charge_factor)[:, dilution.layout.terms]
+    basis = np.hstack([empirical_terms(molality, temperature, what), further])
     zero = found.crystals.value[position]
     value = zero + law + np.einsum("kj,kj->k", basis, found.solution[block])
     # ΔsolH° and the parameters err together: their covariance within the block counts

@@ -11,7 +11,7 @@ from numpy.typing import NDArray
 from reconcile.calorimetry import ReducedRuns
 from reconcile.campaign import Campaign
 from reconcile.dilution.models import TERMS, scale_of_parameters
-from reconcile.dilution.season import Dilution, model_values
+from reconcile.dilution.season import Dilution, corrected_runs, model_values
 
 Floats = NDArray[np.float64]
 
@@ -45,7 +45,7 @@ def covariance_of(campaign: Campaign, dilution: Dilution) -> SharedCovariance:
     for k in np.flatnonzero(np.diff(loading.indptr)).tolist():
         at = slice(loading.indptr[k], loading.indptr[k + 1])
         shared.append((ledger.sources.name[k], tuple(loading.indices[at].tolist()), tuple(loading.data[at].tolist())))
-    names = tuple(campaign.salts[i].formula for i in dilution.crystal.tolist())
+    names = tuple(campaign.salts[i].formula for i in dilution.layout.crystal.tolist())
     return SharedCovariance(names, ledger.private_variance, tuple(shared))
 
 
@@ -56,7 +56,7 @@ def budget_table(campaign: Campaign, dilution: Dilution) -> pd.DataFrame:
     ranked = np.take_along_axis(contribution, order, axis=1)
     rest = np.sqrt((ranked[:, MOST_LINES:] ** 2).sum(axis=1))
     ranked, order = ranked[:, :MOST_LINES], order[:, :MOST_LINES]
-    salts = np.array([campaign.salts[i].formula for i in dilution.crystal.tolist()], dtype=object)
+    salts = np.array([campaign.salts[i].formula for i in dilution.layout.crystal.tolist()], dtype=object)
     names = np.append(np.array(lines, dtype=object), "other")
     ranked = np.column_stack([ranked, rest])
     order = np.column_stack([order, np.full(len(rest), len(lines))])
@@ -79,9 +79,9 @@ def random_and_shared(dilution: Dilution) -> tuple[Floats, Floats]:
 
 
 def parameters_of(dilution: Dilution) -> list[dict[str, tuple[float, float]]]:
-    """∂β/∂T of each crystal's electrolyte with u, kg/(mol K) (Cφ: kg²/(mol² K)); scaled where ions are more than two."""
+    """∂β/∂T of each crystal's electrolyte with u, kg/(mol K), Cφ kg²/(mol² K); scaled where ions are more than two."""
     found = dilution.extrapolation
-    what = dilution.electrolytes.composition.of(dilution.block)
+    what = dilution.layout.electrolytes.composition.of(dilution.layout.block)
     factor = scale_of_parameters(what)
     factor = np.where(np.isfinite(factor), factor, 1.0)
     value = found.solution[:, :4] / factor
@@ -102,6 +102,7 @@ def runs_table(campaign: Campaign, runs: ReducedRuns, dilution: Dilution) -> pd.
         return np.array([*labels, ""], dtype=object)[code]
 
     formulas = tuple(s.formula for s in campaign.salts)
+    corrected = corrected_runs(campaign, runs, dilution)
     return pd.DataFrame(
         {
             "run": text(keys["run"].code, keys["run"].labels),
@@ -109,15 +110,15 @@ def runs_table(campaign: Campaign, runs: ReducedRuns, dilution: Dilution) -> pd.
             "sample": text(campaign.sample, campaign.samples.keys["sample"].labels),
             "calorimeter": text(campaign.calorimeter, campaign.calorimeters.keys["calorimeter"].labels),
             "batch": text(campaign.batch.code, campaign.batch.labels),
-            "included": dilution.included,
-            "reason": dilution.reason,
+            "included": dilution.layout.included,
+            "reason": dilution.layout.reason,
             "molality / (mol/kg)": runs.molality.value,
             "enthalpy / (kJ/mol)": runs.enthalpy.value,
             "u(enthalpy) / (kJ/mol)": runs.enthalpy.u,
-            "dilution_correction / (kJ/mol)": dilution.correction,
-            "standard_enthalpy / (kJ/mol)": dilution.standard.value,
-            "u(standard_enthalpy) / (kJ/mol)": dilution.standard.u,
-            "standardised_residual": dilution.standardised_residual,
+            "dilution_correction / (kJ/mol)": corrected.correction,
+            "standard_enthalpy / (kJ/mol)": corrected.standard_enthalpy,
+            "u(standard_enthalpy) / (kJ/mol)": corrected.u,
+            "standardised_residual": corrected.standardised_residual,
         }
     )
 
@@ -125,9 +126,9 @@ def runs_table(campaign: Campaign, runs: ReducedRuns, dilution: Dilution) -> pd.
 def curves_table(campaign: Campaign, runs: ReducedRuns, dilution: Dilution) -> pd.DataFrame:
     """Curves for the figures, 80 points a salt: model with u, limiting law, and the straight lines in m and in √m."""
     pieces = []
-    salt_of_row = campaign.salt[dilution.row]
-    for position, salt in enumerate(dilution.crystal.tolist()):
-        rows = dilution.row[salt_of_row == salt]
+    salt_of_row = campaign.salt[dilution.layout.row]
+    for position, salt in enumerate(dilution.layout.crystal.tolist()):
+        rows = dilution.layout.row[salt_of_row == salt]
         m, enthalpy = runs.molality.value[rows], runs.enthalpy.value[rows]
         at = np.linspace(0, 1.04 * np.sqrt(m.max()), POINTS) ** 2
         value, u, law = model_values(dilution, np.full(POINTS, position), at, campaign.reference_temperature)
@@ -153,12 +154,12 @@ def curves_table(campaign: Campaign, runs: ReducedRuns, dilution: Dilution) -> p
 
 def smoothed_of(campaign: Campaign, runs: ReducedRuns, dilution: Dilution) -> list[list[dict[str, float]]]:
     """ΔsolH at round molalities within each salt's range, and at infinite dilution."""
-    crystals = len(dilution.crystal)
+    crystals = len(dilution.layout.crystal)
     salt = dilution.extrapolation.problem.salt
     low, high = np.full(crystals, np.inf), np.zeros(crystals)
-    np.minimum.at(low, salt, runs.molality.value[dilution.row])
-    np.maximum.at(high, salt, runs.molality.value[dilution.row])
-    within = (ROUND >= 0.9 * low[:, None]) & (ROUND <= 1.1 * high[:, None])
+    np.minimum.at(low, salt, runs.molality.value[dilution.layout.row])
+    np.maximum.at(high, salt, runs.molality.value[dilution.layout.row])
+    within = (0.9 * low[:, None] <= ROUND) & (1.1 * high[:, None] >= ROUND)
     position, column = np.nonzero(within | (ROUND == 0))
     at = ROUND[column]
     value, u, _ = model_values(dilution, position, at, campaign.reference_temperature)

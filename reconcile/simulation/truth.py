@@ -1,4 +1,4 @@
-"""Campaigns with known truth: enthalpies of solution at any molality, and what a laboratory would write down of them."""
+"""Campaigns with known truth: enthalpies at any molality, and what a laboratory would write down of them."""
 
 from __future__ import annotations
 

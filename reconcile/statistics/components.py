@@ -55,7 +55,7 @@ def restricted_maximum(log_likelihood: Likelihood, start: Floats, step: float = 
         at_zero = log_likelihood(without)
         if np.isfinite(at_zero) and at_zero >= value - 0.01:
             best, value = without, at_zero
-    return best
+    return np.asarray(best)
 
 
 def likelihood_grid(log_likelihood: Likelihood, best: Floats, start: Floats) -> tuple[Floats, Floats]:

@@ -98,7 +98,7 @@ class Ledger:
     @property
     def private_variance(self) -> Floats:
         """D: the variance that belongs to each entry alone, (n,)."""
-        return np.einsum("il,il->i", self.private, self.private)
+        return np.asarray(np.einsum("il,il->i", self.private, self.private))
 
     @property
     def shared_variance(self) -> Floats:
@@ -108,7 +108,7 @@ class Ledger:
     @property
     def u(self) -> Floats:
         """Standard uncertainty of each entry, (n,)."""
-        return np.sqrt(self.private_variance + self.shared_variance)
+        return np.asarray(np.sqrt(self.private_variance + self.shared_variance))
 
     def covariance(self, rows: Integers | None = None) -> Floats:
         """Dense covariance of a few entries (all, where none are named)."""
@@ -210,7 +210,7 @@ def stack(ledgers: Sequence[Ledger]) -> Ledger:
         tuple(s.name[i] for s, i in merged),
         tuple(s.kind[i] for s, i in merged),
         tuple(s.budget_line[i] for s, i in merged),
-        np.array([s.degrees_of_freedom[i] for s, i in merged], dtype=float),  # type: ignore[index]
+        np.array([s.degrees_of_freedom[i] for s, i in merged], dtype=np.float64),  # type: ignore[index]
     )
     lines = tuple(dict.fromkeys(line for ledger in ledgers for line in ledger.lines))
     blocks, privates = [], []

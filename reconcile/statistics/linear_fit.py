@@ -94,7 +94,7 @@ class LinearFit:
     @property
     def degrees_of_freedom(self) -> int:
         """Observations less unknowns."""
-        return len(self.observations) - self.unknowns
+        return int(len(self.observations) - self.unknowns)
 
     @cached_property
     def log_restricted_likelihood(self) -> float:
@@ -144,7 +144,11 @@ class LinearFit:
         return np.asarray(left * self.weight[:, None])
 
     def single_observations(self) -> tuple[Floats, Floats]:
-        """Score and information of an error in each observation alone, both (n,): the diagonal of `respond(identity)`."""
+        """Score and information of an error in each observation alone, (n,) each: the diagonal of `respond`."""
+        return self._single_observations
+
+    @cached_property
+    def _single_observations(self) -> tuple[Floats, Floats]:
         leverage = self._inner_leverage()
         if len(self._wide):
             root = linalg.solve_triangular(self._corner[0], np.eye(len(self._wide)), trans="T", lower=self._corner[1])
@@ -294,8 +298,8 @@ def least_squares(observations: Ledger, design: sparse.csr_array, blocks: Blocks
     design : sparse (n, p)
         Of full column rank.
     blocks : Blocks, optional
-        Where the unknowns fall into blocks that no observation joins. A source of one block alone is solved for inside it;
-        without blocks a source of a few rows is.
+        Where the unknowns fall into blocks that no observation joins. A source of one block alone is solved for
+        inside it; without blocks a source of a few rows is.
 
     Returns
     -------

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from typing import Protocol
+from typing import Any, Protocol, TypeAlias
 
 import numpy as np
 from numpy.typing import NDArray
@@ -10,7 +10,7 @@ from scipy import linalg, sparse
 from scipy.sparse.linalg import splu
 
 Floats = NDArray[np.float64]
-Matrix = Floats | sparse.csr_array
+Matrix: TypeAlias = Any  # an array or a csr_array: both know @, .T, rows by slices
 
 SMALL = 400_000  # entries up to which dense arrays are quicker than sparse ones
 

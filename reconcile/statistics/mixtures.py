@@ -38,7 +38,7 @@ def mixture_quantile(weight: Floats, mean: Floats, sd: Floats, probability: floa
         middle = (low + high) / 2
         below = (weight * ndtr((middle[:, None] - mean) / sd)).sum(axis=1) < probability
         low, high = np.where(below, middle, low), np.where(below, high, middle)
-    return (low + high) / 2
+    return np.asarray((low + high) / 2)
 
 
 def freedom_of_factor(factor: Floats, level: float = 0.95) -> Floats:

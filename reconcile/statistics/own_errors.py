@@ -22,7 +22,8 @@ NEGLIGIBLE = 1e-12  # of a variance
 def own_errors(fit: LinearFit, unknowns: Integers) -> Ledger:
     """Ledger of the chosen unknowns from A⁻¹ alone, the wide sources held.
 
-    A block with one chosen unknown keeps all of it private, by budget line. Where a block has several (an anhydrous salt and
+    A block with one chosen unknown keeps all of it private, by budget line. Where a block has several (an anhydrous
+    salt and
     its hydrates), its narrow sources and, line by line, the errors of its observations are shared among them.
     """
     assert fit.blocks is not None
@@ -49,12 +50,13 @@ def own_errors(fit: LinearFit, unknowns: Integers) -> Ledger:
             private_square[:, lines.index(line)] += np.bincount(entry[mine], size, minlength=len(unknowns))
         # its narrow sources
         entry = entry_of_block[fit._block_of_column[fit.unknowns :]]
-        mine = np.flatnonzero(entry >= 0)
-        load = -solved[fit.unknowns :][mine]
-        alone = ~several[entry[mine]]
-        np.add.at(private_square, (entry[mine][alone], line_of_source[mine][alone]), load[alone] ** 2)
-        rows.append(entry[mine][~alone])
-        columns.append(mine[~alone])
+        touching = np.flatnonzero(entry >= 0)
+        load = -solved[fit.unknowns :][touching]
+        alone = ~several[entry[touching]]
+        at = (entry[touching][alone], line_of_source[touching][alone])
+        np.add.at(private_square, at, load[alone] ** 2)
+        rows.append(entry[touching][~alone])
+        columns.append(touching[~alone])
         values.append(load[~alone])
         gains.append((entry_of_block, gain))
 
@@ -77,7 +79,9 @@ def _share_lines(
     private[several] = 0.0
     order = np.argsort(fit.blocks.of_row, kind="stable")
     edges = np.searchsorted(fit.blocks.of_row[order], np.arange(int(block.max()) + 2))
-    rows, columns, values, names, lines = [], [], [], [], []
+    rows, columns, values = [], [], []
+    names: list[str] = []
+    lines: list[str] = []
     for b in np.unique(block[several]).tolist():  # electrolytes with hydrates: few
         mine = order[edges[b] : edges[b + 1]]
         entries = np.flatnonzero(block == b)

@@ -1,0 +1,140 @@
+"""A campaign's reduced runs laid out as one dilution problem."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+from scipy import sparse
+
+from reconcile.calorimetry import ReducedRuns
+from reconcile.campaign import Campaign
+from reconcile.chemistry import water
+from reconcile.dilution.electrolytes import Electrolytes, electrolytes, why_no_limit
+from reconcile.dilution.further_terms import LINES, further_terms, terms_needed
+from reconcile.dilution.priors import PublishedSets, prior_of
+from reconcile.dilution.problem import Problem, observed_part
+from reconcile.dilution.scatter import components_of
+from reconcile.dilution.temperature import U_CURVATURE, HeatCapacityChange
+from reconcile.statistics import Collector, Ledger
+
+Floats = NDArray[np.float64]
+Integers = NDArray[np.int64]
+Booleans = NDArray[np.bool_]
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Layout:
+    """The problem, and which run, salt and electrolyte of the campaign each of its parts is."""
+
+    problem: Problem
+    electrolytes: Electrolytes  # of all salts of the campaign
+    block: Integers  # (B of the problem,) position in electrolytes
+    crystal: Integers  # (C,) position in the campaign's salts
+    row: Integers  # (rows of the problem,) position in the campaign's runs
+    included: Booleans  # (n,)
+    reason: NDArray[np.object_]  # (n,) why a run is not in the problem
+    no_limit: dict[int, str]  # salt ─► why it has no standard enthalpy
+    observed: Ledger  # (n,) all runs, those left out too
+    basis: Floats  # (n, k)
+    block_of_run: Integers  # (n,) of the problem; 0 where its salt is not in it
+    terms: Booleans  # (8,) further terms in use
+
+
+def lay_out(campaign: Campaign, runs: ReducedRuns, sets: PublishedSets, heat_capacity: HeatCapacityChange) -> Layout:
+    """Sort runs into crystals and electrolytes, and put together what is known of each before the fit.
+
+    Raises
+    ------
+    ValueError
+        If no run is left.
+    """
+    what = electrolytes(campaign.salts)
+    no_limit = {i: text for i, salt in enumerate(campaign.salts) if (text := why_no_limit(salt))}
+    included, reason = _included(campaign, runs, no_limit)
+    for i in set(range(len(campaign.salts))) - set(campaign.salt[included].tolist()) - set(no_limit):
+        no_limit[i] = "none of its runs is included"
+    row = np.flatnonzero(included)
+    if not row.size:
+        raise ValueError("no run is left: every one is excluded, above max_molality, or of a salt without a limit")
+    crystal, salt = np.unique(campaign.salt[row], return_inverse=True)
+    used, block_of_crystal = np.unique(what.of_salt[crystal], return_inverse=True)
+    here = Electrolytes(
+        tuple(what.name[i] for i in used.tolist()), block_of_crystal, tuple(what.charge_type[i] for i in used.tolist()),
+        what.composition.of(used),
+    )  # fmt: skip
+    allowed = np.ones(len(used), bool)
+    np.logical_and.at(allowed, block_of_crystal, campaign.published_dilution[crystal])
+    prior = prior_of(here, sets, allowed)
+    position = np.zeros(len(what.name), dtype=np.int64)
+    position[used] = np.arange(len(used))
+    block_of_run = position[what.of_salt[campaign.salt]]
+
+    observed, basis = observed_part(
+        runs.enthalpy, runs.molality, runs.temperature, runs.u_temperature, here, block_of_run, prior.mean,
+        water.debye_hueckel_slope(runs.temperature), water.slope_relative_u(runs.temperature),
+        heat_capacity.value[campaign.salt], campaign.reference_temperature,
+    )  # fmt: skip
+    factor = here.composition.charge_factor[block_of_run]
+    observed = _to_reference_temperature(observed, campaign, runs, factor, heat_capacity)
+    needed = terms_needed(runs.temperature[row], runs.molality.value[row], here, block_of_run[row])
+    terms: Booleans = np.asarray(needed.any(axis=0))
+    if terms.any():
+        basis = np.hstack([basis, further_terms(runs.molality.value, runs.temperature, factor)[:, terms]])
+    fitted = observed if included.all() else observed.take(row)
+    components = components_of(
+        runs.enthalpy.value[row], runs.amount[row], np.sqrt(fitted.private_variance), runs.unstated[row], salt,
+        campaign.batch.code[row], campaign.between_batches[campaign.salt][row],
+    )  # fmt: skip
+    problem = Problem(
+        fitted, salt, block_of_run[row], len(crystal), block_of_crystal, basis if included.all() else basis[row], prior,
+        components, sparse.csr_array((len(row), 0)), here.composition.alpha2 > 0, needed[:, terms],
+        tuple(line for line, there in zip(LINES, terms, strict=True) if there),
+    )  # fmt: skip
+    return Layout(problem, what, used, crystal, row, included, reason, no_limit, observed, basis, block_of_run, terms)
+
+
+def screened_for(campaign: Campaign, runs: ReducedRuns) -> sparse.csr_array:
+    """What the screen looks for beside single runs: a gain of each calorimeter and a wrong composition of each lot.
+
+    Returns
+    -------
+    sparse (n, calorimeters + lots): the run's enthalpy in the columns of its calorimeter and of its lot
+    """
+    parts = []
+    for code, members in ((campaign.calorimeter, len(campaign.calorimeters)), (campaign.sample, len(campaign.samples))):
+        named = np.flatnonzero(code >= 0)
+        shape = (len(campaign.runs), members)
+        parts.append(sparse.csr_array((runs.enthalpy.value[named], (named, code[named])), shape=shape))
+    return sparse.csr_array(sparse.hstack(parts, format="csr"))
+
+
+def _included(campaign: Campaign, runs: ReducedRuns, no_limit: dict[int, str]) -> tuple[Booleans, NDArray[np.object_]]:
+    reason = np.array(campaign.reason, dtype=object)
+    included = campaign.included.copy()
+    above = included & (runs.molality.value > campaign.max_molality[campaign.salt])
+    reason[above] = "above max_molality"
+    unlimited = included & ~above & np.isin(campaign.salt, sorted(no_limit))
+    reason[unlimited] = "its salt has no limit at infinite dilution"
+    return included & ~above & ~unlimited, reason
+
+
+def _to_reference_temperature(
+    observed: Ledger, campaign: Campaign, runs: ReducedRuns, charge_factor: Floats, change: HeatCapacityChange
+) -> Ledger:
+    """Add the sources of the way to the reference temperature at infinite dilution."""
+    collected = Collector(len(observed))
+    away = runs.temperature - campaign.reference_temperature
+    away = np.where(np.abs(away) > 1e-9, away, 0.0)
+    names = [s.formula for s in campaign.salts]
+    if away.any():
+        salt = np.where(away != 0, campaign.salt, -1)
+        line = "heat capacity of dissolution"
+        collected.group(salt, change.u, [f"ΔsolCp° of {s}" for s in names], line, -away / 1000)
+        first = np.zeros(len(names))
+        first[campaign.salt] = charge_factor
+        curvature = [f"ΔsolCp° of {s}: its change with temperature" for s in names]
+        collected.group(salt, U_CURVATURE * first, curvature, line, -(away**2) / 2000)
+    sources, (loading,) = collected.finish()
+    return observed.with_sources(loading, sources) if len(sources) else observed
