@@ -23,7 +23,9 @@ def campaign(rng, blocks=5, runs=9, crystals=2, wide=3):
             of_unknown.append(b)
         columns.append(np.where(inside, rng.normal(size=n), 0.0))
         of_unknown.append(b)
-    narrow = np.column_stack([np.where((of_row == b) & (np.arange(n) % 3 == 0), rng.normal(size=n), 0) for b in range(blocks)])
+    narrow = np.column_stack(
+        [np.where((of_row == b) & (np.arange(n) % 3 == 0), rng.normal(size=n), 0) for b in range(blocks)]
+    )
     loading = np.column_stack([rng.normal(size=(n, wide)) * 0.7, narrow])
     k = loading.shape[1]
     names = [f"calorimeter {i}" for i in range(wide)] + [f"lot {i}" for i in range(blocks)]
@@ -51,8 +53,8 @@ def test_equals_dense_gls(seed, with_blocks):
     np.testing.assert_allclose(fit.value, estimate, atol=1e-10)
     np.testing.assert_allclose(fit.variance(sparse.eye_array(x.shape[1], format="csr")), np.diag(covariance), rtol=1e-9)
     assert fit.chi_square == pytest.approx(y.value @ p @ y.value, rel=1e-9)
-    sign_v, log_v = np.linalg.slogdet(v)
-    sign_c, log_c = np.linalg.slogdet(covariance)
+    _sign_v, log_v = np.linalg.slogdet(v)
+    _sign_c, log_c = np.linalg.slogdet(covariance)
     assert fit.log_restricted_likelihood == pytest.approx(-0.5 * (log_v - log_c + y.value @ p @ y.value), rel=1e-9)
 
     np.testing.assert_allclose(fit.redundancy(), np.diag(v @ p), atol=1e-9)
@@ -65,7 +67,9 @@ def test_equals_dense_gls(seed, with_blocks):
     gain = covariance @ x.toarray().T @ np.linalg.inv(v)
     np.testing.assert_allclose(response.shift, gain @ a, atol=1e-9)
     np.testing.assert_allclose(fit.unexplained(sparse.csr_array(a)), p @ a, atol=1e-9)
-    np.testing.assert_allclose(fit.respond(sparse.csr_array(a), diagonal=True).information, np.diag(a.T @ p @ a), rtol=1e-9)
+    np.testing.assert_allclose(
+        fit.respond(sparse.csr_array(a), diagonal=True).information, np.diag(a.T @ p @ a), rtol=1e-9
+    )
 
     score, information = fit.single_observations()
     np.testing.assert_allclose(score, p @ y.value, atol=1e-9)
@@ -80,7 +84,7 @@ def test_estimate_carries_its_exact_covariance_and_budget(seed):
     ledger = fit.estimate(chosen)
     _, covariance, _, v = dense_gls(y, x)
     np.testing.assert_allclose(ledger.covariance(), covariance[np.ix_(chosen, chosen)], atol=1e-10)
-    contribution, lines = ledger.budgets()
+    contribution, _lines = ledger.budgets()
     np.testing.assert_allclose((contribution**2).sum(axis=1), np.diag(covariance)[chosen], rtol=1e-9)
     # the loading on a wide source is what the estimate would move by, per standard deviation of that source
     gain = covariance @ x.toarray().T @ np.linalg.inv(v)
@@ -95,7 +99,9 @@ def test_order_of_rows_and_unit_do_not_matter(order, scale):
     y, x, blocks = campaign(np.random.default_rng(6))
     reference = least_squares(y, x, blocks)
     at = np.array(order)
-    turned = Ledger(y.value[at] * scale, y.private[at] * scale, y.lines, sparse.csr_array(y.loading[at] * scale), y.sources)
+    turned = Ledger(
+        y.value[at] * scale, y.private[at] * scale, y.lines, sparse.csr_array(y.loading[at] * scale), y.sources
+    )
     fit = least_squares(turned, sparse.csr_array(x[at]), Blocks(blocks.of_row[at], blocks.of_unknown))
     np.testing.assert_allclose(fit.value, reference.value * scale, rtol=1e-8, atol=1e-9 * scale)
     assert fit.chi_square == pytest.approx(reference.chi_square, rel=1e-9)
