@@ -8,7 +8,7 @@ from reconcile.calorimetry import reduce_runs
 from reconcile.campaign import Campaign
 from reconcile.chemistry import water
 from reconcile.comparison import Analysis, compare
-from reconcile.cycles import adjust, network
+from reconcile.cycles import adjust, network, with_own_formation_enthalpies, with_own_solution_enthalpies
 from reconcile.dilution import dilute, heat_capacity_change, published_sets
 
 
@@ -38,13 +38,14 @@ def analyse(campaign: Campaign) -> Analysis:
     limits = dilution.extrapolation
 
     # cycles: all salts and the reference values in one adjustment
-    published = reference.solution_enthalpies(formulas)
-    net = network(salts, limits.crystals, reference.formation_enthalpies(campaign.formation_set), published)
+    published = with_own_solution_enthalpies(reference.solution_enthalpies(formulas), campaign.references)
+    formation = reference.formation_enthalpies(campaign.formation_set)
+    net = network(salts, limits.crystals, with_own_formation_enthalpies(formation, campaign.references), published)
     adjusted = adjust(formulas, net)
 
     # bias: what could be wrong, asked of runs and cycles together
-    bias = search_bias(campaign, runs, dilution, adjusted)
+    suspicions = search_bias(campaign, runs, dilution, adjusted)
 
     # comparison: scores against published values
     scores = compare(formulas, limits.crystals.value, limits.crystals.u, limits.half_width, published, net.circular)
-    return Analysis(campaign, runs, dilution, adjusted, bias, scores, published, parameters, heat_capacities)
+    return Analysis(campaign, runs, dilution, adjusted, suspicions, scores, published, parameters, heat_capacities)

@@ -1,5 +1,5 @@
 """What could be wrong: named hypotheses, their sizes, their significance and their rivals."""
 
-from reconcile.bias.search import search_bias
+from reconcile.bias.search import Suspicions, search_bias
 
-__all__ = ["search_bias"]
+__all__ = ["Suspicions", "search_bias"]

@@ -24,6 +24,7 @@ class Evidence:
     score: Floats  # (h,)
     information: Floats  # (h, h)
     within: Floats  # (h,) share of its information that the runs give without any reference
+    shift: Floats  # (salts, h) what one unit does to the standard enthalpies while it is left in, kJ/mol
     testable: NDArray[np.bool_]  # (h,)
 
 
@@ -50,7 +51,8 @@ def evidence(
     diagonal = np.diag(information)
     testable = diagonal > LEAST * whole
     within = np.where(testable, np.diag(inside.information) / np.where(testable, diagonal, 1.0), 0.0)
-    return Evidence(inside.score + outside.score, information, np.clip(within, 0, 1), testable)
+    shift = inside.shift[:salts]
+    return Evidence(inside.score + outside.score, information, np.clip(within, 0, 1), shift, testable)
 
 
 def partial(found: Evidence, given: list[int]) -> tuple[Floats, Floats]:
@@ -67,6 +69,22 @@ def partial(found: Evidence, given: list[int]) -> tuple[Floats, Floats]:
     information[at] = 1 / np.diag(inverse)
     score[at] = size * information[at]
     return score, np.maximum(information, 0.0)
+
+
+def without(found: Evidence, given: list[int]) -> tuple[Floats, Floats]:
+    """What becomes of the salts if the hypotheses of `given`, sized together, are taken out of the data.
+
+    Returns
+    -------
+    change, variance : arrays (salts,)
+        To be added to the standard enthalpies and to their variances: the uncertainty of the sizes.
+    """
+    if not given:
+        return np.zeros(len(found.shift)), np.zeros(len(found.shift))
+    at = np.array(given)
+    covariance = np.linalg.inv(found.information[np.ix_(at, at)])
+    moved = found.shift[:, at]
+    return -moved @ (covariance @ found.score[at]), np.einsum("si,ij,sj->s", moved, covariance, moved)
 
 
 def correlation(found: Evidence) -> Floats:

@@ -42,5 +42,5 @@ def adjusted_p(p_value: Floats, statistic: Floats, correlation: Floats, others: 
     bound = np.minimum(p_value * count, 1.0)
     here = np.where(beyond >= FEWEST, np.minimum(beyond / DRAWS, bound), bound)
     here = np.maximum(here, p_value)
-    elsewhere = -np.expm1(others * np.log1p(-np.minimum(p_value, 1 - 1e-16)))
-    return np.asarray(np.minimum(1 - (1 - here) * (1 - elsewhere), 1.0))
+    neither = np.log1p(-np.minimum(here, 1 - 1e-16)) + others * np.log1p(-np.minimum(p_value, 1 - 1e-16))
+    return np.asarray(np.clip(-np.expm1(neither), p_value, 1.0))  # exact for the smallest p too

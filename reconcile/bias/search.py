@@ -10,7 +10,7 @@ from numpy.typing import NDArray
 from scipy import sparse
 from scipy.special import ndtri, stdtrit
 
-from reconcile.bias.evidence import Evidence, correlation, evidence, partial, units
+from reconcile.bias.evidence import Evidence, correlation, evidence, partial, units, without
 from reconcile.bias.hypotheses import CATALOGUE, LINEAR, Hypothesis
 from reconcile.bias.largest import adjusted_p
 from reconcile.calorimetry import ReducedRuns
@@ -51,10 +51,20 @@ class _Stage:
     u: Floats  # linear, NaN where nothing can be told
     p_value: Floats
     p_adjusted: Floats
+    given: list[int]  # what is accepted
     runs: Integers  # rows of the single runs at the end of `asked`
 
 
-def search_bias(campaign: Campaign, runs: ReducedRuns, dilution: Dilution, adjustment: Adjustment) -> pd.DataFrame:
+@dataclass(frozen=True, slots=True, eq=False)
+class Suspicions:
+    """What could be wrong, and what would become of the salts."""
+
+    hypotheses: pd.DataFrame
+    change: Floats  # (C,) kJ/mol, of the standard enthalpies if what is significant were taken out
+    variance_of_change: Floats  # (C,)
+
+
+def search_bias(campaign: Campaign, runs: ReducedRuns, dilution: Dilution, adjustment: Adjustment) -> Suspicions:
     """Test the catalogue, each run and each reference value; most significant first.
 
     The most significant is accepted into a joint account as long as its adjusted p is below 0.05; all sizes and
@@ -62,9 +72,9 @@ def search_bias(campaign: Campaign, runs: ReducedRuns, dilution: Dilution, adjus
 
     Returns
     -------
-    DataFrame: hypothesis, subject, size, u, unit, interval_low, interval_high, degrees_of_freedom, statistic, p_value,
-    p_adjusted, delta_chi_square, smallest_detectable, rests_on, confounded_with (design, 6). Of single runs and
-    reference values: those with adjusted p < 0.05 and the worst one.
+    Suspicions. Their table: hypothesis, subject, size, u, unit, interval_low, interval_high, degrees_of_freedom,
+    statistic, p_value, p_adjusted, delta_chi_square, smallest_detectable, rests_on, confounded_with (design, 6). Of
+    single runs and reference values: those with adjusted p < 0.05 and the worst one.
     """
     columns, asked = _catalogue(campaign, runs, dilution)
     accepted: list[int] = []  # positions in the catalogue and among the references
@@ -83,7 +93,8 @@ def search_bias(campaign: Campaign, runs: ReducedRuns, dilution: Dilution, adjus
             accepted.append(best)
         else:
             spoilt.append(int(stage.runs[best - fixed]))
-    return _table(stage, dilution.extrapolation.freedom, len(dilution.layout.row))
+    table = _table(stage, dilution.extrapolation.freedom, len(dilution.layout.row))
+    return Suspicions(table, *without(stage.found, stage.given))
 
 
 def _catalogue(campaign: Campaign, runs: ReducedRuns, dilution: Dilution) -> tuple[sparse.csr_array, list[_Asked]]:
@@ -139,7 +150,7 @@ def _stage(
     adjusted = np.empty(len(asked))
     adjusted[:fixed] = adjusted_p(p[:fixed], as_normal[:fixed], correlation(found)[:fixed, :fixed], visible)
     adjusted[fixed:] = np.minimum(-np.expm1((visible + fixed) * np.log1p(-np.minimum(p[fixed:], 1 - 1e-16))), 1.0)
-    return _Stage(asked, found, z, np.where(seen, 1 / root, np.nan), p, adjusted, worst)
+    return _Stage(asked, found, z, np.where(seen, 1 / root, np.nan), p, adjusted, given, worst)
 
 
 def _worst_runs(

@@ -9,6 +9,7 @@ from typing import Any
 import numpy as np
 import pandas as pd
 
+from reconcile.bias import Suspicions
 from reconcile.calorimetry import ReducedRuns
 from reconcile.campaign import Campaign
 from reconcile.comparison.told import assumptions_table, sources_table
@@ -36,7 +37,7 @@ class Analysis:
     reduced: ReducedRuns
     dilution: Dilution
     adjusted: Adjustment
-    bias: pd.DataFrame
+    suspicions: Suspicions
     comparison: pd.DataFrame
     published: pd.DataFrame  # enthalpies of solution, a row a salt of the fit
     parameters_used: pd.DataFrame  # published dilution parameters, index electrolyte
@@ -67,6 +68,11 @@ class Analysis:
         """χ² of the adjustment of all salts with the references."""
         a = self.adjusted
         return {"chi_square": a.chi_square, "degrees_of_freedom": a.degrees_of_freedom, "p_value": a.p_value}
+
+    @property
+    def bias(self) -> pd.DataFrame:
+        """One row a hypothesis, most significant first."""
+        return self.suspicions.hypotheses
 
     @property
     def reconciled(self) -> pd.DataFrame:
@@ -168,6 +174,8 @@ def _salts(analysis: Analysis) -> pd.DataFrame:
             "verdict": verdict,
             "reason": [dilution.layout.no_limit.get(i, "") for i in range(count)],
             "smoothed": spread_objects(smoothed_of(campaign, analysis.reduced, dilution), []),
+            "standard_enthalpy_without_suspects": spread(limits.crystals.value + analysis.suspicions.change),
+            "u_without_suspects": spread(np.sqrt(limits.crystals.u**2 + analysis.suspicions.variance_of_change)),
             "recommended_value": value,
             "recommended_u": u,
             "recommended_from": np.where(np.isfinite(value), "measured", "none"),

@@ -1,6 +1,7 @@
 """Relative apparent molar enthalpy, and the extrapolation of all salts to infinite dilution."""
 
 from reconcile.dilution.electrolytes import Electrolytes, electrolytes
+from reconcile.dilution.layout import NothingToFit
 from reconcile.dilution.priors import PublishedSets, published_sets
 from reconcile.dilution.season import Dilution, dilute, model_values
 from reconcile.dilution.temperature import HeatCapacityChange, heat_capacity_change
@@ -9,6 +10,7 @@ __all__ = [
     "Dilution",
     "Electrolytes",
     "HeatCapacityChange",
+    "NothingToFit",
     "PublishedSets",
     "dilute",
     "electrolytes",

@@ -24,6 +24,10 @@ Integers = NDArray[np.int64]
 Booleans = NDArray[np.bool_]
 
 
+class NothingToFit(ValueError):
+    """No run of the campaign is left for the fit; the message says why and what to do."""
+
+
 @dataclass(frozen=True, slots=True, eq=False)
 class Layout:
     """The problem, and which run, salt and electrolyte of the campaign each of its parts is."""
@@ -47,7 +51,7 @@ def lay_out(campaign: Campaign, runs: ReducedRuns, sets: PublishedSets, heat_cap
 
     Raises
     ------
-    ValueError
+    NothingToFit
         If no run is left.
     """
     what = electrolytes(campaign.salts)
@@ -57,7 +61,8 @@ def lay_out(campaign: Campaign, runs: ReducedRuns, sets: PublishedSets, heat_cap
         no_limit[i] = "none of its runs is included"
     row = np.flatnonzero(included)
     if not row.size:
-        raise ValueError("no run is left: every one is excluded, above max_molality, or of a salt without a limit")
+        why = "; ".join(sorted({str(r) for r in reason if r}))
+        raise NothingToFit(f"No run is left to fit: {why}. Expected at least one. Take a run back in.")
     crystal, salt = np.unique(campaign.salt[row], return_inverse=True)
     used, block_of_crystal = np.unique(what.of_salt[crystal], return_inverse=True)
     here = Electrolytes(

@@ -62,8 +62,8 @@ def dilute(campaign: Campaign, runs: ReducedRuns, sets: PublishedSets, heat_capa
 
     Raises
     ------
-    ValueError
-        If no run is left to fit.
+    NothingToFit
+        If no run is left.
     """
     layout = lay_out(campaign, runs, sets, heat_capacity)
     found = extrapolate(layout.problem, sparse.csr_array(screened_for(campaign, runs)[layout.row]))

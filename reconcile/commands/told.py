@@ -1,0 +1,18 @@
+"""What a command prints of a finished report."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+if TYPE_CHECKING:
+    from reconcile.report.material import Results
+
+
+def summary(analysis: Results, written: Sequence[Path]) -> str:
+    """The verdict, then the file to open."""
+    from reconcile.report.verdict import verdict
+
+    number = f"{len(written)} file{'' if len(written) == 1 else 's'} written"
+    return "\n".join([*verdict(analysis), f"{number}; open", str(written[-1])])
