@@ -11,7 +11,7 @@ from scipy import sparse
 from reconcile.dilution.mixture import Components, solution_estimate, weigh
 from reconcile.dilution.problem import Problem
 from reconcile.dilution.screen import scatter_freedom, screened
-from reconcile.statistics import Ledger, LinearFit
+from reconcile.statistics import Ledger, LinearFit, estimate
 from reconcile.statistics.components import likelihood_grid, restricted_maximum
 from reconcile.statistics.mixtures import freedom_of_factor, mixture_quantile
 
@@ -139,7 +139,7 @@ def extrapolate(problem: Problem, gains: sparse.csr_array) -> Extrapolation:
     scale = 1.0 if whole else len(problem.salt) / len(sample.salt)
 
     crystals = np.arange(problem.crystals)
-    ledger = fit.estimate(crystals)
+    ledger = estimate(fit, crystals)
     mean, variance, weight = _crystal_mixture(problem, fit, parts)
     width = np.sqrt(np.maximum((weight * (mean - (weight * mean).sum(axis=1, keepdims=True)) ** 2).sum(axis=1), 0))
     ledger = ledger.with_private(width[:, None], [WIDTH])

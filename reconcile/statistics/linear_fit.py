@@ -9,7 +9,7 @@ import numpy as np
 from numpy.typing import NDArray
 from scipy import linalg, sparse
 
-from reconcile.statistics.ledger import Ledger, Sources
+from reconcile.statistics.ledger import Ledger
 from reconcile.statistics.matrices import SMALL, as_dense, beside, factored, scaled_rows
 
 Floats = NDArray[np.float64]
@@ -52,35 +52,35 @@ class LinearFit:
             worst = int(np.flatnonzero(~(variance > 0))[0])
             raise ValueError(f"observation {worst} has no private variance; expected more than 0")
         self.weight = 1 / variance
-        self._narrow, self._wide = _narrow_and_wide(observations, blocks)
+        self.narrow, self.wide = _narrow_and_wide(observations, blocks)
         loading = sparse.csc_array(observations.loading)
-        narrow, outer = sparse.csr_array(loading[:, self._narrow]), sparse.csr_array(loading[:, self._wide])
+        narrow, outer = sparse.csr_array(loading[:, self.narrow]), sparse.csr_array(loading[:, self.wide])
         dense = len(observations) * (self.unknowns + loading.shape[1]) <= SMALL
-        self._inner = beside(design, narrow, dense)
+        self.inner = beside(design, narrow, dense)
         self._outer = outer.toarray() if dense else outer
-        prior = np.concatenate([np.zeros(self.unknowns), np.ones(len(self._narrow))])
-        self._factor = factored(self._inner.T @ scaled_rows(self._inner, self.weight), prior)
+        prior = np.concatenate([np.zeros(self.unknowns), np.ones(len(self.narrow))])
+        self._factor = factored(self.inner.T @ scaled_rows(self.inner, self.weight), prior)
         outer_weighted = scaled_rows(self._outer, self.weight)
-        border = as_dense(self._inner.T @ outer_weighted)
+        border = as_dense(self.inner.T @ outer_weighted)
         self._border_solved = self._factor.solve(border) if border.shape[1] else border
-        corner = as_dense(self._outer.T @ outer_weighted) + np.eye(len(self._wide)) - border.T @ self._border_solved
+        corner = as_dense(self._outer.T @ outer_weighted) + np.eye(len(self.wide)) - border.T @ self._border_solved
         self._corner = linalg.cho_factor((corner + corner.T) / 2)
         inner, outer = self._solve(self._project(observations.value))
         self.value: Floats = inner[: self.unknowns]
         self._source_inner, self._source_outer = inner[self.unknowns :], outer
         #: y − Xθ̂ − Fε̂, what neither unknowns nor sources explain, (n,)
-        self.residual: Floats = observations.value - self._inner @ inner - self._outer @ outer
+        self.residual: Floats = observations.value - self.inner @ inner - self._outer @ outer
 
     def _project(self, columns: Floats | sparse.csr_array) -> tuple[Floats, Floats]:
         if isinstance(columns, np.ndarray):
             weighted = columns * (self.weight if columns.ndim == 1 else self.weight[:, None])
-            return np.asarray(self._inner.T @ weighted), np.asarray(self._outer.T @ weighted)
+            return np.asarray(self.inner.T @ weighted), np.asarray(self._outer.T @ weighted)
         scaled = scaled_rows(columns, self.weight)
-        return as_dense(self._inner.T @ scaled), as_dense(self._outer.T @ scaled)
+        return as_dense(self.inner.T @ scaled), as_dense(self._outer.T @ scaled)
 
     def _solve(self, right: tuple[Floats, Floats]) -> tuple[Floats, Floats]:
         inner, outer = right
-        if not len(self._wide):
+        if not len(self.wide):
             return self._factor.solve(inner), outer
         outer = linalg.cho_solve(self._corner, outer - self._border_solved.T @ inner)
         return self._factor.solve(inner) - self._border_solved @ outer, outer
@@ -106,7 +106,7 @@ class LinearFit:
     def source_values(self) -> Floats:
         """Predicted values of all sources, (K,), in standard deviations."""
         out = np.zeros(len(self.observations.sources))
-        out[self._narrow], out[self._wide] = self._source_inner, self._source_outer
+        out[self.narrow], out[self.wide] = self._source_inner, self._source_outer
         return out
 
     def respond(self, loadings: sparse.csr_array, diagonal: bool = False) -> Response:
@@ -140,7 +140,7 @@ class LinearFit:
     def unexplained(self, loadings: sparse.csr_array) -> Floats:
         """P L, (n, h): weighted loadings less what unknowns and sources would take up of them; few columns only."""
         inner, outer = self._solve(self._project(loadings))
-        left = as_dense(loadings) - self._inner @ inner - self._outer @ outer
+        left = as_dense(loadings) - self.inner @ inner - self._outer @ outer
         return np.asarray(left * self.weight[:, None])
 
     def single_observations(self) -> tuple[Floats, Floats]:
@@ -150,11 +150,11 @@ class LinearFit:
     @cached_property
     def _single_observations(self) -> tuple[Floats, Floats]:
         leverage = self._inner_leverage()
-        if len(self._wide):
-            root = linalg.solve_triangular(self._corner[0], np.eye(len(self._wide)), trans="T", lower=self._corner[1])
+        if len(self.wide):
+            root = linalg.solve_triangular(self._corner[0], np.eye(len(self.wide)), trans="T", lower=self._corner[1])
             for start in range(0, len(leverage), CHUNK):
                 at = slice(start, start + CHUNK)
-                left = as_dense(self._outer[at]) - self._inner[at] @ self._border_solved
+                left = as_dense(self._outer[at]) - self.inner[at] @ self._border_solved
                 leverage[at] += ((left @ root.T) ** 2).sum(axis=1)
         return self.weight * self.residual, np.maximum(self.weight - self.weight**2 * leverage, 0.0)
 
@@ -164,32 +164,32 @@ class LinearFit:
         leverage = np.zeros(rows)
         if self.blocks is None:
             for start in range(0, rows, CHUNK):
-                some = as_dense(self._inner[start : start + CHUNK])
+                some = as_dense(self.inner[start : start + CHUNK])
                 leverage[start : start + CHUNK] = np.einsum("rq,qr->r", some, self._factor.solve(some.T))
             return leverage
-        for chosen, solved in self._coloured(np.arange(self._inner.shape[1])):
-            picked = np.zeros(self._inner.shape[1])
+        for chosen, solved in self.coloured(np.arange(self.inner.shape[1])):
+            picked = np.zeros(self.inner.shape[1])
             picked[chosen] = 1.0
-            leverage += (self._inner @ picked) * (self._inner @ solved)
+            leverage += (self.inner @ picked) * (self.inner @ solved)
         return leverage
 
     @cached_property
-    def _block_of_column(self) -> Integers:
+    def block_of_column(self) -> Integers:
         """Block of every unknown and narrow source, (q,)."""
         assert self.blocks is not None
-        first = _first_row(sparse.csc_array(self.observations.loading)[:, self._narrow])
+        first = _first_row(sparse.csc_array(self.observations.loading)[:, self.narrow])
         return np.concatenate([self.blocks.of_unknown, self.blocks.of_row[first]])
 
-    def _coloured(self, columns: Integers) -> list[tuple[Integers, Floats]]:
+    def coloured(self, columns: Integers) -> list[tuple[Integers, Floats]]:
         """Columns of A⁻¹, one of each block at a time: A is block-diagonal, so they do not disturb each other."""
-        block = self._block_of_column[columns]
+        block = self.block_of_column[columns]
         order = np.argsort(block, kind="stable")
         starts = np.r_[0, np.flatnonzero(np.diff(block[order])) + 1]
         rank = np.arange(len(order)) - np.repeat(starts, np.diff(np.r_[starts, len(order)]))
         out = []
         for colour in range(int(rank.max()) + 1 if len(rank) else 0):
             chosen = columns[order[rank == colour]]
-            unit = np.zeros(self._inner.shape[1])
+            unit = np.zeros(self.inner.shape[1])
             unit[chosen] = 1.0
             out.append((chosen, self._factor.solve(unit)))
         return out
@@ -207,7 +207,7 @@ class LinearFit:
         array (s, t), 0 where the column is −1.
         """
         out = np.zeros(columns.shape)
-        for chosen, solved in self._coloured(np.unique(rows)):
+        for chosen, solved in self.coloured(np.unique(rows)):
             mine = np.isin(rows, chosen)
             out[mine] = np.where(columns[mine] >= 0, solved[np.maximum(columns[mine], 0)], 0.0)
         return out
@@ -223,9 +223,9 @@ class LinearFit:
         out = np.zeros(wanted.shape[0])
         for start in range(0, len(out), CHUNK):
             some = wanted[start : start + CHUNK].toarray().T
-            right = np.zeros((self._inner.shape[1], some.shape[1]))
+            right = np.zeros((self.inner.shape[1], some.shape[1]))
             right[: self.unknowns] = some
-            inner, _ = self._solve((right, np.zeros((len(self._wide), some.shape[1]))))
+            inner, _ = self._solve((right, np.zeros((len(self.wide), some.shape[1]))))
             out[start : start + CHUNK] = np.einsum("ps,ps->s", some, inner[: self.unknowns])
         return out
 
@@ -241,47 +241,32 @@ class LinearFit:
             unit = np.zeros((rows, len(at)))
             unit[at, np.arange(len(at))] = 1.0
             inner, outer = self._solve(self._project(unit))
-            taken = np.einsum("rq,qr->r", as_dense(self._inner[at]), inner)
+            taken = np.einsum("rq,qr->r", as_dense(self.inner[at]), inner)
             taken += np.einsum("rk,kr->r", as_dense(self._outer[at]), outer)
             source = np.zeros((len(self.observations.sources), len(at)))
-            source[self._narrow], source[self._wide] = inner[self.unknowns :], outer
+            source[self.narrow], source[self.wide] = inner[self.unknowns :], outer
             through = np.einsum("rk,kr->r", self.observations.loading[at].toarray(), source)
             own[at] = 1 - taken + through
         return own
 
-    def estimate(self, unknowns: Integers) -> Ledger:
-        """The chosen unknowns as a ledger: what their errors come from, by name, and how they hang together.
+    def wide_loadings(self, unknowns: Integers) -> tuple[Floats, Floats]:
+        """How chosen estimates depend on the wide sources.
 
-        Needs blocks. Three parts, which add up to the exact covariance of the estimate:
-
-        - each block's own A⁻¹: private errors of its observations by budget line, and its narrow sources;
-        - A⁻¹B S⁻¹: the wide sources, under their own names;
-        - A⁻¹B (S⁻¹ − S⁻²)^½: what the adjustment of the wide sources carries over from all observations (`adjusted`).
+        Returns
+        -------
+        named : array (s, wide)
+            A⁻¹B S⁻¹, the loadings on the wide sources themselves.
+        adjusted : array (s, directions)
+            A⁻¹B (S⁻¹ − S⁻²)^½, what their adjustment carries over from all observations.
         """
-        if self.blocks is None:
-            raise ValueError("an estimate with named sources needs blocks")
-        from reconcile.statistics.own_errors import own_errors
-
-        own = own_errors(self, unknowns)
         half = self._border_solved[unknowns]
-        wide = linalg.cho_solve(self._corner, half.T).T if len(self._wide) else half
-        left = self._adjusted_root()
-        adjusted = half @ left
-        count = adjusted.shape[1]
-        names = Sources(
-            tuple(f"adjustment of shared sources, direction {i + 1}" for i in range(count)),
-            ("adjusted",) * count,
-            ("all runs, through what they share",) * count,
-        )
-        return own.with_sources(sparse.csr_array(wide), self.observations.sources.take(self._wide)).with_sources(
-            sparse.csr_array(adjusted), names
-        )
+        if not len(self.wide):
+            return half, half
+        return linalg.cho_solve(self._corner, half.T).T, half @ self._adjusted_root()
 
     def _adjusted_root(self) -> Floats:
         """(S⁻¹ − S⁻²)^½ as columns, those of no size left out."""
-        if not len(self._wide):
-            return np.zeros((0, 0))
-        inverse = linalg.cho_solve(self._corner, np.eye(len(self._wide)))
+        inverse = linalg.cho_solve(self._corner, np.eye(len(self.wide)))
         size, direction = np.linalg.eigh((inverse + inverse.T) / 2)
         left = np.clip(size - size**2, 0.0, None)
         keep = left > 1e-12

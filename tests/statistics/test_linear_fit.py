@@ -6,7 +6,7 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 from scipy import sparse
 
-from reconcile.statistics import Blocks, Ledger, Sources, least_squares, stated
+from reconcile.statistics import Blocks, Ledger, Sources, estimate, least_squares, stated
 
 
 def campaign(rng, blocks=5, runs=9, crystals=2, wide=3):
@@ -81,7 +81,7 @@ def test_estimate_carries_its_exact_covariance_and_budget(seed):
     y, x, blocks = campaign(np.random.default_rng(seed))
     fit = least_squares(y, x, blocks)
     chosen = np.flatnonzero((x.toarray() == 1).any(axis=0))
-    ledger = fit.estimate(chosen)
+    ledger = estimate(fit, chosen)
     _, covariance, _, v = dense_gls(y, x)
     np.testing.assert_allclose(ledger.covariance(), covariance[np.ix_(chosen, chosen)], atol=1e-10)
     contribution, _lines = ledger.budgets()

@@ -1,17 +1,13 @@
-"""A block's own share of its estimates' errors: private lines and narrow sources, by name."""
+"""Estimates of a fit as a ledger: what their errors come from, by name, and how they hang together."""
 
 from __future__ import annotations
-
-from typing import TYPE_CHECKING
 
 import numpy as np
 from numpy.typing import NDArray
 from scipy import sparse
 
 from reconcile.statistics.ledger import Ledger, Sources
-
-if TYPE_CHECKING:
-    from reconcile.statistics.linear_fit import LinearFit
+from reconcile.statistics.linear_fit import LinearFit
 
 Floats = NDArray[np.float64]
 Integers = NDArray[np.int64]
@@ -19,7 +15,42 @@ Integers = NDArray[np.int64]
 NEGLIGIBLE = 1e-12  # of a variance
 
 
-def own_errors(fit: LinearFit, unknowns: Integers) -> Ledger:
+def estimate(fit: LinearFit, unknowns: Integers) -> Ledger:
+    """The chosen unknowns as a ledger with the exact covariance of the estimate, in three parts.
+
+    - each block's own A⁻¹: private errors of its observations by budget line, and its narrow sources;
+    - A⁻¹B S⁻¹: the wide sources, under their own names;
+    - A⁻¹B (S⁻¹ − S⁻²)^½: what the adjustment of the wide sources carries over from all observations (`adjusted`).
+
+    Parameters
+    ----------
+    fit : LinearFit
+        With blocks.
+    unknowns : int array (s,)
+
+    Returns
+    -------
+    Ledger (s,)
+
+    Raises
+    ------
+    ValueError
+        If the fit has no blocks.
+    """
+    if fit.blocks is None:
+        raise ValueError("an estimate with named sources needs blocks")
+    named, adjusted = fit.wide_loadings(unknowns)
+    count = adjusted.shape[1]
+    directions = Sources(
+        tuple(f"adjustment of shared sources, direction {i + 1}" for i in range(count)),
+        ("adjusted",) * count,
+        ("all runs, through what they share",) * count,
+    )
+    ledger = _own_errors(fit, unknowns).with_sources(sparse.csr_array(named), fit.observations.sources.take(fit.wide))
+    return ledger.with_sources(sparse.csr_array(adjusted), directions)
+
+
+def _own_errors(fit: LinearFit, unknowns: Integers) -> Ledger:
     """Ledger of the chosen unknowns from A⁻¹ alone, the wide sources held.
 
     A block with one chosen unknown keeps all of it private, by budget line. Where a block has several (an anhydrous
@@ -32,24 +63,24 @@ def own_errors(fit: LinearFit, unknowns: Integers) -> Ledger:
     place = np.full(fit.unknowns, -1)
     place[unknowns] = np.arange(len(unknowns))
 
-    names = fit.observations.sources.take(fit._narrow)
+    names = fit.observations.sources.take(fit.narrow)
     lines = tuple(dict.fromkeys(fit.observations.lines + names.budget_line))
     line_of_source = np.array([lines.index(b) for b in names.budget_line], dtype=np.int64)
     private_square = np.zeros((len(unknowns), len(lines)))
     rows, columns, values = [], [], []
     gains: list[tuple[Integers, Floats]] = []
-    for chosen, solved in fit._coloured(unknowns):
-        entry_of_block = np.full(int(fit._block_of_column.max()) + 1, -1)
-        entry_of_block[fit._block_of_column[chosen]] = place[chosen]
+    for chosen, solved in fit.coloured(unknowns):
+        entry_of_block = np.full(int(fit.block_of_column.max()) + 1, -1)
+        entry_of_block[fit.block_of_column[chosen]] = place[chosen]
         # errors of the block's own observations
-        gain = fit.weight * (fit._inner @ solved)
+        gain = fit.weight * (fit.inner @ solved)
         entry = entry_of_block[fit.blocks.of_row]
         mine = entry >= 0
         for column, line in enumerate(fit.observations.lines):
             size = (gain * fit.observations.private[:, column])[mine] ** 2
             private_square[:, lines.index(line)] += np.bincount(entry[mine], size, minlength=len(unknowns))
         # its narrow sources
-        entry = entry_of_block[fit._block_of_column[fit.unknowns :]]
+        entry = entry_of_block[fit.block_of_column[fit.unknowns :]]
         touching = np.flatnonzero(entry >= 0)
         load = -solved[fit.unknowns :][touching]
         alone = ~several[entry[touching]]
