@@ -7,7 +7,7 @@ from pathlib import Path
 from typing import TYPE_CHECKING
 
 if TYPE_CHECKING:
-    from reconcile.report.material import Results
+    from reconcile.report.results import Results
 
 
 def summary(analysis: Results, written: Sequence[Path]) -> str:

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import io
-from collections.abc import Iterator
 from typing import Any, cast
 
 import matplotlib as mpl
@@ -14,8 +13,9 @@ from matplotlib.figure import Figure
 from numpy.typing import NDArray
 
 from reconcile.report.figure_style import STYLE, WIDTH, printable
-from reconcile.report.material import Material, Results, rows
+from reconcile.report.names import file_names
 from reconcile.report.palette import LIGHT
+from reconcile.report.results import Results, rows
 from reconcile.report.scores_figure import scores
 
 SCORES = "scores"  # name of the figure of all scores
@@ -32,12 +32,6 @@ _LEGEND = (
 )
 
 
-def render(material: Material) -> Iterator[tuple[str, bytes]]:
-    """figures/*.svg."""
-    for name, svg in material.drawings.items():
-        yield f"figures/{name}.svg", svg.encode("utf-8", "replace")
-
-
 def draw(results: Results) -> dict[str, str]:
     """All drawings.
 
@@ -51,7 +45,7 @@ def draw(results: Results) -> dict[str, str]:
     drawings : dict
         Name of the file without ending ─► SVG text.
     """
-    names = Material(results).names
+    names = file_names([str(salt) for salt in results.salts["salt"]])
     runs = dict(iter(results.runs.groupby("salt", sort=False)))
     curves = dict(iter(results.curves.groupby("salt", sort=False)))
     none = results.runs.iloc[:0], results.curves.iloc[:0]

@@ -15,7 +15,7 @@ Render = Callable[["Material"], Iterator[tuple[str, bytes]]]
 SERVED: dict[str, str] = {  # word ─► module with render(material); written in this order
     "results": "reconcile.report.results_json",
     "tables": "reconcile.report.tables",
-    "figures": "reconcile.report.figures",
+    "figures": "reconcile.report.figure_files",
     "page": "reconcile.report.page",
 }
 NOT_YET = ("appendix", "workbook", "thermoml", "citations", "runs")

@@ -14,8 +14,9 @@ from reconcile.report import views
 from reconcile.report.cautions import CAUTIONS
 from reconcile.report.figures import SCORES
 from reconcile.report.markup import formula, list_of_formulae, minus
-from reconcile.report.material import Material, whole_test
+from reconcile.report.material import Material
 from reconcile.report.palette import themed
+from reconcile.report.results import whole_test
 from reconcile.report.rounding import probability, significant
 from reconcile.report.scores_figure import MOST_SCORES
 from reconcile.report.sections import MOST_FIGURES, MOST_SECTIONS, sections

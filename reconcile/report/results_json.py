@@ -12,7 +12,8 @@ import pandas as pd
 
 from reconcile import __version__
 from reconcile.report.columns import TABLES, Column
-from reconcile.report.material import Covariance, Material, Results
+from reconcile.report.material import Material
+from reconcile.report.results import Covariance, Results
 
 SCHEMA_VERSION = "1.0"
 MOST_LINES = 2000  # a longer list stands on one line: a third of the time

@@ -12,8 +12,9 @@ from markupsafe import Markup
 
 from reconcile.report.cells import Line, View, freedom, p_value, pair, percent, span, text, two_places, view
 from reconcile.report.markup import formula, minus
-from reconcile.report.material import Material, rows
+from reconcile.report.material import Material
 from reconcile.report.palette import themed
+from reconcile.report.results import rows
 from reconcile.report.rounding import NOTHING, rounded, significant, value_and_u
 from reconcile.report.svg import inlined
 

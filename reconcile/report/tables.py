@@ -11,7 +11,8 @@ import pandas as pd
 
 from reconcile import __version__
 from reconcile.report.columns import PRIMARY_KEYS, TABLES, Column, Kind
-from reconcile.report.material import Material, Results
+from reconcile.report.material import Material
+from reconcile.report.results import Results
 
 _STARTS_A_FORMULA = ("=", "+", "-", "@", "\t", "\r")
 _TYPES = {"text": "string", "list": "string", "number": "number", "integer": "integer", "boolean": "boolean"}

@@ -9,7 +9,7 @@ import numpy as np
 import pandas as pd
 
 from reconcile.report.markup import minus
-from reconcile.report.material import Results, rows, whole_test
+from reconcile.report.results import Results, rows, whole_test
 from reconcile.report.rounding import interval_at, probability, rounded, significant
 
 LEVEL = 0.05  # of every test spoken of here

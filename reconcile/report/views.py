@@ -11,7 +11,7 @@ from markupsafe import Markup
 
 from reconcile.report.cells import Line, View, freedom, p_value, pair, percent, span, text, two_places, view, word
 from reconcile.report.markup import formula, list_of_formulae, minus
-from reconcile.report.material import Results, rows
+from reconcile.report.results import Results, rows
 from reconcile.report.rounding import NOTHING, significant, value_and_u
 from reconcile.report.verdict import LEVEL, sized, sized_interval
 
@@ -121,7 +121,8 @@ def without_suspects(salts: pd.DataFrame, marked: int) -> View | None:
         )
     note = (
         "kJ/mol. Without: if every row above with an adjusted p below 0.05 were true, all sized together; the "
-        "uncertainty of the sizes is in u. Nothing in this report is corrected so; a correction is a line in campaign.toml."
+        "uncertainty of the sizes is in u. Nothing in this report is corrected so; a correction is a line of "
+        "campaign.toml."
     )
     heads = ("Salt", "As measured", "Without the suspects", "Change")
     return view("What would become of the table of salts", heads, {1, 2, 3}, lines, note) if lines else None

@@ -9,7 +9,8 @@ from collections.abc import Callable, Iterable
 from pathlib import Path
 
 from reconcile.report.formats import ReportError, chosen, renderer
-from reconcile.report.material import Material, Results
+from reconcile.report.material import Material
+from reconcile.report.results import Results
 
 
 def write_report(
