@@ -27,6 +27,7 @@ POWER = 0.8
 SAME = 0.99  # correlation above which two hypotheses are one direction
 ALIKE = 0.9  # and above which they are named as rivals
 CANDIDATES = 12  # single runs looked at with the cycles as well
+MANY = 1e4  # degrees of freedom told as infinite
 MOST = 20  # explanations taken into the joint account
 
 
@@ -143,7 +144,7 @@ def _stage(
     seen = found.testable & (information > 1e-6 * np.diag(found.information))
     root = np.sqrt(np.where(seen, information, 1.0))
     z = np.where(seen, score / root, 0.0)
-    p = np.where(seen, tail(z, dilution.extrapolation.freedom), 1.0)
+    p = np.where(seen, tail(z, dilution.extrapolation.freedom, found.within), 1.0)
     one_sided = np.array([a.kind is not None and a.kind.never_negative for a in asked], dtype=bool)
     p = np.where(one_sided, np.where(z > 0, p / 2, 1 - p / 2), p)
     as_normal = np.where(p < 1, np.abs(ndtri(np.maximum(p, 1e-300) / 2)), 0.0)  # Student's tails as the normal's
@@ -203,7 +204,8 @@ def _table(stage: _Stage, freedom: float, runs: int) -> pd.DataFrame:
         to_size, slope = (a.kind.size, a.kind.size_slope) if a.kind is not None else LINEAR
         size[i], u[i] = float(to_size(linear[i : i + 1])[0]), float(stage.u[i] * slope(linear[i : i + 1])[0])
     told = np.isfinite(u)
-    factor = float(stdtrit(max(freedom - 1, 1.0), 0.975)) if np.isfinite(freedom) else float(ndtri(0.975))
+    own = freedom / np.maximum(stage.found.within, 1e-3) ** 2  # of each size: what references say has a stated scale
+    factor = np.where(np.isfinite(own), stdtrit(np.clip(own - 1, 1.0, 1e9), 0.975), ndtri(0.975))
     count = len(stage.asked) - len(stage.runs) + runs
     critical = float(-ndtri(LEVEL / (2 * max(count, 1)))) + float(ndtri(POWER))
 
@@ -219,7 +221,7 @@ def _table(stage: _Stage, freedom: float, runs: int) -> pd.DataFrame:
             "unit": [a.unit for a in stage.asked],
             "interval_low": or_missing(size - factor * u),
             "interval_high": or_missing(size + factor * u),
-            "degrees_of_freedom": freedom,
+            "degrees_of_freedom": np.where(own < MANY, own, np.inf),
             "statistic": or_missing(stage.z),
             "p_value": or_missing(stage.p_value),
             "p_adjusted": or_missing(stage.p_adjusted),
@@ -245,8 +247,12 @@ def _rests_on(asked: _Asked, within: float, told: bool) -> tuple[str, ...]:
 
 
 def _rivals(stage: _Stage) -> list[tuple[str, ...]]:
-    close = np.abs(correlation(stage.found)) > ALIKE
+    """What each hypothesis cannot well be told from; a rival that would need a size that cannot be is none."""
+    likeness = correlation(stage.found)
+    close = np.abs(likeness) > ALIKE
     np.fill_diagonal(close, False)
+    one_sided = np.array([a.kind is not None and a.kind.never_negative for a in stage.asked], dtype=bool)
+    close &= ~(one_sided[None, :] & (likeness * np.sign(stage.z)[:, None] < 0))
     label = [f"{a.name} {a.subject}" for a in stage.asked]
     fixed = len(label) - len(stage.runs)
     return [tuple(label[j] for j in np.flatnonzero(row[:fixed]).tolist()) for row in close]

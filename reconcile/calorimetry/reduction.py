@@ -129,7 +129,7 @@ def reduce_runs(campaign: Campaign) -> ReducedRuns:
         amount=amount,
         temperature=temperature.value,
         u_temperature=_known(temperature.u),
-        unstated=~np.isfinite(np.where(by_heat, q["heat"].u, q["enthalpy"].u)),
+        unstated=~(np.where(by_heat, q["heat"].u, q["enthalpy"].u) > 0),  # a 0 is no statement: nothing is exact
         lot_water=np.where(by_heat, enthalpy / w, 0.0),
     )
 

@@ -2,9 +2,19 @@
 
 from reconcile.campaign.problems import CampaignError, Problem
 from reconcile.campaign.reading import read_campaign
-from reconcile.campaign.tables import Campaign, Key, Quantity, Remark, Table
+from reconcile.campaign.tables import (
+    ENTHALPY_OF_SOLUTION,
+    FORMATION_ENTHALPY,
+    Campaign,
+    Key,
+    LabReference,
+    Quantity,
+    Remark,
+    Table,
+)
 from reconcile.campaign.writing import write_campaign
 
 __all__ = [
-    "Campaign", "CampaignError", "Key", "Problem", "Quantity", "Remark", "Table", "read_campaign", "write_campaign",
+    "ENTHALPY_OF_SOLUTION", "FORMATION_ENTHALPY", "Campaign", "CampaignError", "Key", "LabReference", "Problem",
+    "Quantity", "Remark", "Table", "read_campaign", "write_campaign",
 ]  # fmt: skip

@@ -1,118 +1,26 @@
-"""campaign.toml as a document: its tables and keys by pydantic, all faults at once with path and what stands there."""
+"""campaign.toml as a document: its shape checked, all faults at once with path and what stands there."""
 
 from __future__ import annotations
 
 import copy
-import datetime
 from collections.abc import Mapping
 from difflib import get_close_matches
-from typing import Annotated, Any
+from typing import Any
 
-from pydantic import BaseModel, BeforeValidator, ConfigDict, Field, StringConstraints, ValidationError
+from pydantic import ValidationError
 
+from reconcile.campaign.keys import ACTS, MODELS, CampaignKeys, Document
 from reconcile.campaign.places import order, spelt
 from reconcile.campaign.problems import Problems, quoted
 from reconcile.campaign.settings import UNREADABLE
 
-LATER_TABLES = ("headings", "reference", "correct", "period")
+LATER_TABLES = ("headings", "correct", "period")
 LATER_KEYS = {("references", "gas_ions"), ("references", "proton_hydration")}
-
-
-def _date(value: object) -> object:
-    """TOML dates as text; a text must be ISO 8601."""
-    if isinstance(value, datetime.date):  # a datetime is one too
-        return value.isoformat()
-    if isinstance(value, str):
-        datetime.date.fromisoformat(value[:10])
-    return value
-
-
-def _name(value: object) -> object:
-    """A run named by a whole number may be typed as one."""
-    return str(value) if isinstance(value, int) and not isinstance(value, bool) else value
-
-
-Sentence = Annotated[str, StringConstraints(strip_whitespace=True, min_length=1)]
-Name = Annotated[Sentence, BeforeValidator(_name)]
-Date = Annotated[str, BeforeValidator(_date)]
-
-
-class Strict(BaseModel):
-    """No unknown keys, no silent conversions."""
-
-    model_config = ConfigDict(extra="forbid", strict=True)
-
-
-class CampaignKeys(Strict):
-    """[campaign]."""
-
-    title: Sentence | None = None
-    laboratory: Sentence | None = None
-    reference_temperature: Sentence | None = None
-    pressure: Sentence | None = None
-    date: Date | None = None
-
-
-class UncertaintyKeys(Strict):
-    """[uncertainty]: by table; the headings in it are checked by the list of columns."""
-
-    runs: dict[str, Any] = {}
-    samples: dict[str, Any] = {}
-    calorimeters: dict[str, Any] = {}
-
-
-class SaltKeys(Strict):
-    """[analysis.salts.KCl]."""
-
-    published_dilution: bool | None = None
-    max_molality: Sentence | None = None
-    between_batches: bool | None = None
-
-
-class AnalysisKeys(SaltKeys):
-    """[analysis]."""
-
-    salts: dict[str, SaltKeys] = {}
-
-
-class ReferencesKeys(Strict):
-    """[references]."""
-
-    set: Sentence | None = None
-
-
-class ExcludeKeys(Strict):
-    """[[exclude]]."""
-
-    run: Name
-    reason: Sentence
-    by: Sentence | None = None
-    date: Date | None = None
-
-
-class NoteKeys(Strict):
-    """[[note]]."""
-
-    run: Name
-    text: Sentence
-    by: Sentence | None = None
-    date: Date | None = None
-
-
-class Document(Strict):
-    """The whole file."""
-
-    campaign: CampaignKeys = Field(default_factory=CampaignKeys)
-    uncertainty: UncertaintyKeys = Field(default_factory=UncertaintyKeys)
-    analysis: AnalysisKeys = Field(default_factory=AnalysisKeys)
-    references: ReferencesKeys = Field(default_factory=ReferencesKeys)
-    exclude: list[ExcludeKeys] = []
-    note: list[NoteKeys] = []
-
-
-_MODELS: Mapping[str, type[Strict]] = {
-    "": Document, "campaign": CampaignKeys, "uncertainty": UncertaintyKeys, "analysis": AnalysisKeys,
-    "analysis.salts": SaltKeys, "references": ReferencesKeys, "exclude": ExcludeKeys, "note": NoteKeys,
+_UNITS = {"reference_temperature": "K", "max_molality": "mol/kg", "pressure": "kPa", "value": "kJ/mol", "u": "kJ/mol"}
+_EXPECTED = {
+    "run": "the name of a run", "reason": "a sentence", "quantity": "the quantity that the value is of",
+    "species": "a formula or an ion", "value": "a number with its unit",
+    "u": "the standard uncertainty of the value, with its unit", "source": "a text that says where the value is from",
 }  # fmt: skip
 
 Path = tuple[str | int, ...]
@@ -173,18 +81,17 @@ def _tell(file: str, original: dict[str, Any], path: Path, kind: str, problems: 
     elif kind in ("missing", "string_too_short"):
         place = spelt(path[:-1]) if len(path) > 2 else place
         owner = _value(original, path[:-1])
-        run = owner.get("run") if isinstance(owner, dict) else None
-        found = f"run {run} has no {key}" if run is not None and key != "run" else f"there is no {key}"
-        expected = {"run": "the name of a run", "reason": "a sentence"}.get(key, "a text")
-        remedy, code = f'Add {key} = "…".', "missing"
+        whose = _whose(owner, key)
+        found = f"{whose} has no {key}" if whose else f"there is no {key}"
+        expected = _EXPECTED.get(key, "a text")
+        remedy, code = f'Add {key} = "…{f" {_UNITS[key]}" if key in _UNITS else ""}".', "missing"
     elif kind == "bool_type":
         found, expected, code = _shown(value), "true or false", "type"
         remedy = f"Write {key} = true or {key} = false, without quotation marks."
     elif kind == "string_type":
         found, code = _shown(value), "type"
-        units = {"reference_temperature": "K", "max_molality": "mol/kg", "pressure": "kPa"}
-        expected = "a number with its unit, between quotation marks" if key in units else "a text"
-        remedy = f'Write {key} = "{value} {units[key]}".' if key in units else f'Write {key} = "…".'
+        expected = "a number with its unit, between quotation marks" if key in _UNITS else "a text"
+        remedy = f'Write {key} = "{value} {_UNITS[key]}".' if key in _UNITS else f'Write {key} = "…".'
     elif kind == "value_error":
         found, expected, remedy, code = _shown(value), "a date as in 2026-05-31", "Write year-month-day.", "date"
     else:
@@ -192,6 +99,16 @@ def _tell(file: str, original: dict[str, Any], path: Path, kind: str, problems: 
         expected = f"a table [[{path[0]}]] for each" if several else f"a table [{'.'.join(map(str, path))}]"
         found, remedy, code = _shown(value), "Write keys = values under that line.", "type"
     problems.add(file, None, place, found, expected, remedy, code, order(original, path))
+
+
+def _whose(owner: Any, key: str) -> str:
+    """What an entry is about, in words; empty where that is not typed, or is what is missing."""
+    if not isinstance(owner, dict):
+        return ""
+    if "run" in owner and key != "run":
+        return f"run {owner['run']}"
+    species = owner.get("species")
+    return species if isinstance(species, str) and key != "species" else ""
 
 
 def _shown(value: Any) -> str:
@@ -207,11 +124,13 @@ def _unknown(path: Path, value: Any) -> tuple[str, str, str]:
     if parents[:2] == ["analysis", "salts"] and isinstance(value, dict) and len(path) == 4:
         formula = f"{path[2]}.{key}"
         return f"{quoted(formula)} is taken apart at its point", "one name", f'Write [analysis.salts."{formula}"].'
-    model = _MODELS.get(".".join(parents[:2]), _MODELS.get("".join(parents[:1]), Document))
+    model = MODELS.get(".".join(parents[:2]), MODELS.get("".join(parents[:1]), Document))
     names = list(model.model_fields)
     expected = f"one of {', '.join(names)}"
     if not parents and key in CampaignKeys.model_fields:
         return f"{quoted(key)} stands outside a table", expected, "Write it below the line [campaign]."
+    if parents == ["reference"] and key == "U":
+        return f"{quoted(key)} is unknown", expected, "Write u, the standard uncertainty: U divided by its k."
     close = get_close_matches(key.casefold(), names, n=1, cutoff=0.6)
     return f"{quoted(key)} is unknown", expected, f"Did you mean {close[0]}?" if close else "Delete it."
 
@@ -226,10 +145,9 @@ def _take_out(document: dict[str, Any], path: Path, kind: str) -> None:
             return
     key = path[-1]
     if isinstance(key, int):
-        here[key] = {"run": UNREADABLE, "reason": UNREADABLE, "text": UNREADABLE}
-        names = ExcludeKeys if path[0] == "exclude" else NoteKeys
-        here[key] = {name: here[key][name] for name, info in names.model_fields.items() if info.is_required()}
-    elif path[0] in ("exclude", "note") and len(path) == 3 and kind != "extra_forbidden" and key not in ("by", "date"):
+        fields = ACTS[str(path[0])].model_fields
+        here[key] = {name: UNREADABLE for name, info in fields.items() if info.is_required()}
+    elif path[0] in ACTS and len(path) == 3 and kind != "extra_forbidden" and key not in ("by", "date"):
         here[key] = UNREADABLE
     else:
         here.pop(key, None)

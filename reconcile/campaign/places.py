@@ -1,4 +1,4 @@
-"""Places in campaign.toml: how messages name them, and their order in the file."""
+"""Places in campaign.toml: how messages name them, their order in the file, and who signed."""
 
 from __future__ import annotations
 
@@ -36,3 +36,15 @@ def spelt(path: Sequence[str | int]) -> str:
     if len(path) == 1:
         return str(path[0])
     return f"[{'.'.join(str(step) for step in path[:-1])}] {path[-1]}"
+
+
+def signed(text: str, by: str | None, date: str | None) -> str:
+    """A sentence with who wrote it and when, where that is given.
+
+    Examples
+    --------
+    >>> signed("bulb broke late", "A. B.", "2026-05-31")
+    'bulb broke late (A. B., 2026-05-31)'
+    """
+    signature = ", ".join(part for part in (by, date) if part)
+    return f"{text} ({signature})" if signature else text

@@ -26,6 +26,7 @@ from reconcile.campaign.links import (
     unify,
 )
 from reconcile.campaign.named import calorimeters_as_named, samples_as_named
+from reconcile.campaign.own_values import remarks_of_own_values
 from reconcile.campaign.problems import CampaignError, Problems
 from reconcile.campaign.quantities import Built, build, empty_table
 from reconcile.campaign.settings import Settings
@@ -135,10 +136,12 @@ class _Assembly:
             remarks=(
                 *remarks_of_tables(runs, self.built, self.files, self.settings, salts, self.place),
                 *contradictions(runs.table, samples, sample, salts, salt),
+                *remarks_of_own_values(self.settings.references, salts, self.settings.formation_set),
             ),
             checksums=self.checksums,
             date=self.settings.date,
             notes=noted,
+            references=self.settings.references,
         )
 
     def _stem(self) -> str:

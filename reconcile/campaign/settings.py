@@ -1,4 +1,4 @@
-"""What campaign.toml may say: the laboratory's defaults, choices, exclusions and notes."""
+"""What campaign.toml may say: the laboratory's defaults, choices, own values, exclusions and notes."""
 
 from __future__ import annotations
 
@@ -6,6 +6,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass, field
 
 from reconcile.campaign.quantities import Default
+from reconcile.campaign.tables import LabReference
 
 REFERENCE_TEMPERATURE = 298.15  # K
 PRESSURE = 100.0  # kPa
@@ -58,5 +59,6 @@ class Settings:
     choices: Choices = field(default_factory=Choices)
     salts: Mapping[str, tuple[str, Choices]] = field(default_factory=dict)  # identity ─► formula, choices
     formation_set: str = FORMATION_SET
+    references: tuple[LabReference, ...] = ()
     exclusions: tuple[Exclusion, ...] = ()
     notes: tuple[Note, ...] = ()

@@ -54,6 +54,21 @@ class Remark:
     affects: str = "all runs"  # whom it concerns, in words
 
 
+ENTHALPY_OF_SOLUTION, FORMATION_ENTHALPY = "enthalpy of solution", "formation enthalpy"
+
+
+@dataclass(frozen=True, slots=True)
+class LabReference:
+    """A value of the laboratory's own that stands in place of the tabulated one, [[reference]]."""
+
+    quantity: str  # enthalpy of solution (at infinite dilution) or formation enthalpy, at 298.15 K
+    species: str  # CaCl2·6H2O, Ca+2, H2O
+    phase: str  # cr, aq, l
+    value: float  # kJ/mol
+    u: float  # kJ/mol, > 0
+    source: str
+
+
 @dataclass(frozen=True, slots=True, eq=False)
 class Campaign:
     """A laboratory's season, checked: what the rest of the chain computes from."""
@@ -80,3 +95,4 @@ class Campaign:
     checksums: Mapping[str, str] = field(default_factory=dict)  # file ─► sha256
     date: str = ""  # [campaign] date, ISO 8601
     notes: tuple[tuple[str, str], ...] = ()  # [[note]]: run, text
+    references: tuple[LabReference, ...] = ()  # [[reference]]: values of the laboratory's own

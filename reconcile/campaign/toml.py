@@ -12,7 +12,8 @@ from typing import TYPE_CHECKING, Any
 from reconcile.campaign.columns import FUNCTIONS, LATER_FUNCTIONS, TABLES, Column, columns_of
 from reconcile.campaign.delimited import read_bytes
 from reconcile.campaign.headings import nearest_heading
-from reconcile.campaign.places import order, spelt
+from reconcile.campaign.own_values import own_values
+from reconcile.campaign.places import order, signed, spelt
 from reconcile.campaign.problems import Problems, number, quoted
 from reconcile.campaign.quantities import DIVISORS, USUAL_COVERAGE, Default
 from reconcile.campaign.settings import (
@@ -28,7 +29,7 @@ from reconcile.campaign.units import Scale, UnitError, measured
 from reconcile.chemistry import FormulaError, read_salt
 
 if TYPE_CHECKING:
-    from reconcile.campaign.document import Document, SaltKeys
+    from reconcile.campaign.keys import Document, SaltKeys
 
 _TEMPERATURE = columns_of("runs")["temperature"]
 _MOLALITY = columns_of("runs")["molality"]
@@ -79,12 +80,13 @@ class _Reader:
             choices=self._choices(self.document.analysis, ("analysis",)),
             salts=self._salts(),
             formation_set=self._set(),
+            references=own_values(self.document.reference, self._refuse),
             exclusions=tuple(
-                Exclusion(one.run, _signed(one.reason, one.by, one.date), *self._at("exclude", place))
+                Exclusion(one.run, signed(one.reason, one.by, one.date), *self._at("exclude", place))
                 for place, one in enumerate(self.document.exclude)
             ),
             notes=tuple(
-                Note(one.run, _signed(one.text, one.by, one.date), *self._at("note", place))
+                Note(one.run, signed(one.text, one.by, one.date), *self._at("note", place))
                 for place, one in enumerate(self.document.note)
             ),
         )
@@ -224,9 +226,3 @@ class _Reader:
 
 
 _FACTOR = Column("campaign", "k", "", "quantity", "1", "a number", ("1",), (1.0, 1.0), above=0.0)
-
-
-def _signed(text: str, by: str | None, date: str | None) -> str:
-    """A sentence with who wrote it and when, where that is given."""
-    signature = ", ".join(part for part in (by, date) if part)
-    return f"{text} ({signature})" if signature else text

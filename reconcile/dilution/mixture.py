@@ -48,7 +48,8 @@ def weigh(problem: Problem, fit: LinearFit, precision: Floats) -> Components:
     covariance, value = solution_estimate(problem, fit, 4)
     shift = problem.population_shift(fit)
     inverse = np.linalg.inv(covariance)
-    information = _positive(inverse - precision)
+    here = problem.parameter_column >= 0  # of a term that a solution does not have the runs say nothing
+    information = np.where(here[:, :, None] & here[:, None, :], _positive(inverse - precision), 0.0)
     score = np.einsum("bij,bj->bi", inverse, value) - np.einsum("bij,bj->bi", precision + information, shift)
     base = np.linalg.inv(problem.prior.covariance)
     scaled = base[:, None] / SCALES[:, None, None]

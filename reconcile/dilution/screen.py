@@ -18,6 +18,7 @@ Integers = NDArray[np.int64]
 
 LEVEL = 0.01  # adjusted p below which something is taken into the model while components are estimated
 MOST = 12  # rounds
+WHOLLY = 0.95  # share of the information above which a statistic is taken to have the runs' own scale
 WIDE = 1e3  # prior sd of what was found, in its own standard uncertainties: as good as free
 
 
@@ -41,18 +42,32 @@ def scatter_freedom(problem: Problem, sizes: Floats, fit: LinearFit) -> float:
     return max(float(redundancy @ part), 1e-9) / square
 
 
-def tail(statistic: Floats, freedom: float) -> Floats:
-    """Two-sided p of a standardised statistic whose scale was estimated from the same runs.
+def tail(statistic: Floats, freedom: float, within: Floats | float = 1.0) -> Floats:
+    """Two-sided p of standardised statistics whose scale was estimated, wholly or in part, from the same runs.
 
-    With ν degrees of freedom behind the scale, t = z √((ν − 1)/(ν − z²)) follows Student's t with ν − 1.
+    Parameters
+    ----------
+    statistic : array (h,)
+    freedom : float
+        ν behind the estimated scatter; infinite where all was stated.
+    within : array (h,) or float
+        Share of a statistic's information that comes from the runs, whose scale it is; the rest has a stated one.
+
+    Returns
+    -------
+    array (h,). Where all comes from the runs, z² cannot pass ν and t = z √((ν − 1)/(ν − z²)) follows Student's t with
+    ν − 1 (a residual under its own scale: externally studentised). Else z itself is taken as Student's t with ν/within²
+    degrees of freedom (Welch & Satterthwaite).
     """
-    z = np.abs(np.asarray(statistic, float))
+    z, share = np.broadcast_arrays(np.abs(np.asarray(statistic, float)), np.asarray(within, float))
     if not np.isfinite(freedom):
         return np.asarray(2 * stdtr(1e9, -z))
+    own = share > WHOLLY
+    mixed = np.maximum(freedom / np.maximum(share, 1e-3) ** 2 - 1, 1e-3)
     if freedom <= 1.5:
-        return np.ones_like(z)
+        return np.asarray(np.where(own, 1.0, 2 * stdtr(mixed, -z)))
     t = z * np.sqrt((freedom - 1) / np.maximum(freedom - z**2, 1e-9))
-    return np.asarray(2 * stdtr(freedom - 1, -t))
+    return np.asarray(np.where(own, 2 * stdtr(freedom - 1, -t), 2 * stdtr(mixed, -z)))
 
 
 def screened(

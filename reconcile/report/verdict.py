@@ -29,7 +29,7 @@ _STUCK = "\N{NO-BREAK SPACE}"
 
 
 def verdict(results: Results) -> list[str]:
-    """A few sentences, each on one question: how much, consistent, suspect, agreeing, assumed.
+    """A few sentences, each on one question: how much, consistent, suspect, what of it, agreeing, assumed.
 
     Parameters
     ----------
@@ -45,10 +45,11 @@ def verdict(results: Results) -> list[str]:
         _amount(results),
         _consistency(results),
         _suspicion(results.bias),
+        _consequence(results),
         _agreement(results.salts),
         _assumed(results.assumptions),
     )
-    return [_kept_together(sentence) for sentence in sentences]
+    return [_kept_together(sentence) for sentence in sentences if sentence]
 
 
 def _kept_together(sentence: str) -> str:
@@ -153,6 +154,25 @@ def _suspicion(bias: pd.DataFrame) -> str:
     named_ones = [f"{named(row)}, {sized(row)}" for row in serious[1 : 1 + MOST_NAMED]]
     left = len(serious) - 1 - len(named_ones)
     return f"{text}. Suspects beside it: {'; '.join(named_ones)}" + (f"; and {left} more." if left else ".")
+
+
+def _consequence(results: Results) -> str:
+    """What the significant suspects would do to the table of salts; "" where there is none."""
+    if not (results.bias["p_adjusted"] < LEVEL).any():
+        return ""
+    salts = results.salts
+    change = (salts["standard_enthalpy_without_suspects"] - salts["standard_enthalpy"]).to_numpy(float)
+    part = np.abs(np.nan_to_num(change)) / salts["u"].to_numpy(float)
+    beyond = int(np.count_nonzero(part > 1))
+    if not beyond:
+        return "If they are real, no salt would move by more than its standard uncertainty."
+    worst = int(np.nanargmax(part))
+    size = significant(change[worst], 2)
+    return (
+        f"The values and intervals of the table are as measured, with nothing taken out: if the suspects are real, "
+        f"{counted(beyond, 'salt')} would move by more than {'its' if beyond == 1 else 'their'} standard uncertainty, "
+        f"most of all {salts['salt'].iloc[worst]}, by {minus(size)} kJ/mol; the second table under Suspects gives all."
+    )
 
 
 def _agreement(salts: pd.DataFrame) -> str:

@@ -241,7 +241,6 @@ SETTINGS = {
     "proton": ("[references]\nproton_hydration = '-1091 kJ/mol'", "not yet served"),
     "headings": ("[headings]\nx = 'mass / g'", "not yet served"),
     "correct": ("[[correct]]\ncalorimeter = 'A'", "not yet served"),
-    "reference": ("[[reference]]\nspecies = 'KCl'", "not yet served"),
     "period": ("[[period]]\nrun = 'R1'", "not yet served"),
     "no reason": ("[[exclude]]\nrun = 'R1'", 'exclude 1: run R1 has no reason. Expected a sentence. Add reason = "…".'),
     "blank reason": ("[[exclude]]\nrun = 'R1'\nreason = ' '", "run R1 has no reason"),
@@ -355,7 +354,8 @@ PIECES = [
     " ",
     "/ %", "run,salt,molality / (mol/kg),enthalpy / (kJ/mol)\n", "R1,KCl,0.1,17.5\n", "[[exclude]]\n", "run = 'R1'\n",
     "[campaign]\n", "[analysis.salts.KCl]\n", "[uncertainty.runs]\n", "'u(heat)' = '1 %'\n", "title = ",
-    "reason = 'x'\n",
+    "reason = 'x'\n", "[[reference]]\n", "quantity = 'enthalpy of solution'\n", "species = 'KCl'\n",
+    "u = '0.1 kJ/mol'\n", "value = '17.2 kJ/mol'\n", "source = 'x'\n",
 ]  # fmt: skip
 
 
