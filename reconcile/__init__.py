@@ -8,11 +8,17 @@ from typing import TYPE_CHECKING, Any
 if TYPE_CHECKING:
     from reconcile.campaign import read_campaign
     from reconcile.pipeline import analyse
+    from reconcile.reference import lookup
     from reconcile.report import write_report
 
-__all__ = ["__version__", "analyse", "read_campaign", "write_report"]
+__all__ = ["__version__", "analyse", "lookup", "read_campaign", "write_report"]
 
-_HOME = {"read_campaign": "reconcile.campaign", "analyse": "reconcile.pipeline", "write_report": "reconcile.report"}
+_HOME = {
+    "read_campaign": "reconcile.campaign",
+    "analyse": "reconcile.pipeline",
+    "write_report": "reconcile.report",
+    "lookup": "reconcile.reference",
+}
 
 
 def _version() -> str:

@@ -1,49 +1,33 @@
-"""Standard atomic weights, IUPAC 2021, with their uncertainties."""
+"""Standard atomic weights with their uncertainties, out of the one table that holds them."""
 
 from __future__ import annotations
 
+import csv
 from functools import lru_cache
-from math import sqrt
+from pathlib import Path
 from types import MappingProxyType
 
-SOURCE = "IUPAC standard atomic weights 2021, abridged values (Prohaska et al., Pure Appl. Chem. 94, 573)"
-STATUS = "read"  # in the table of the package periodictable 2.1 (public domain), element by element
+from reconcile.chemistry.folder import tables_folder
 
-# element, weight, half-width of the range that normal materials span. Where IUPAC gives an interval (H, Li, B, C, N,
-# O, Mg, Si, S, Cl, Ar, Br, Tl, Pb) this is the abridged single value with its ±. Nothing here for elements without a
-# standard weight but radium, which reference tables know as a salt former: mass of its nuclide 226.
-_TABLE = """
-    H 1.008 0.0002; He 4.002602 0.000002; Li 6.94 0.06; Be 9.0121831 0.0000005;
-    B 10.81 0.02; C 12.011 0.002; N 14.007 0.001; O 15.999 0.001;
-    F 18.998403162 0.000000005; Ne 20.1797 0.0006; Na 22.98976928 0.00000002; Mg 24.305 0.002;
-    Al 26.9815384 0.0000003; Si 28.085 0.001; P 30.973761998 0.000000005; S 32.06 0.02;
-    Cl 35.45 0.01; Ar 39.95 0.16; K 39.0983 0.0001; Ca 40.078 0.004;
-    Sc 44.955907 0.000004; Ti 47.867 0.001; V 50.9415 0.0001; Cr 51.9961 0.0006;
-    Mn 54.938043 0.000002; Fe 55.845 0.002; Co 58.933194 0.000003; Ni 58.6934 0.0004;
-    Cu 63.546 0.003; Zn 65.38 0.02; Ga 69.723 0.001; Ge 72.63 0.008;
-    As 74.921595 0.000006; Se 78.971 0.008; Br 79.904 0.003; Kr 83.798 0.002;
-    Rb 85.4678 0.0003; Sr 87.62 0.01; Y 88.905838 0.000002; Zr 91.224 0.002;
-    Nb 92.90637 0.00001; Mo 95.95 0.01; Ru 101.07 0.02; Rh 102.90549 0.00002;
-    Pd 106.42 0.01; Ag 107.8682 0.0002; Cd 112.414 0.004; In 114.818 0.001;
-    Sn 118.71 0.007; Sb 121.76 0.001; Te 127.6 0.03; I 126.90447 0.00003;
-    Xe 131.293 0.006; Cs 132.90545196 0.00000006; Ba 137.327 0.007; La 138.90547 0.00007;
-    Ce 140.116 0.001; Pr 140.90766 0.00001; Nd 144.242 0.003; Sm 150.36 0.02;
-    Eu 151.964 0.001; Gd 157.25 0.03; Tb 158.925354 0.000007; Dy 162.5 0.001;
-    Ho 164.930329 0.000005; Er 167.259 0.003; Tm 168.934219 0.000005; Yb 173.045 0.01;
-    Lu 174.9668 0.0001; Hf 178.486 0.006; Ta 180.94788 0.00002; W 183.84 0.01;
-    Re 186.207 0.001; Os 190.23 0.03; Ir 192.217 0.002; Pt 195.084 0.009;
-    Au 196.96657 0.000004; Hg 200.592 0.003; Tl 204.38 0.01; Pb 207.2 1.1;
-    Bi 208.9804 0.00001; Th 232.0377 0.0004; Pa 231.03588 0.00001; U 238.02891 0.00003;
-    Ra 226.0254 0.0001
-"""
+FILE = "atomic_weights.csv"
+_VALUE, _U = "standard_atomic_weight / 1", "u(standard_atomic_weight) / 1"
 
 
 @lru_cache(maxsize=1)
 def standard_atomic_weights() -> MappingProxyType[str, tuple[float, float]]:
-    """Element to (standard atomic weight, standard uncertainty), g/mol.
+    """Element to (standard atomic weight, standard uncertainty), g/mol: IUPAC 2021, abridged.
 
     The published ± is the half-width of a range that holds normal materials, every value within it equally
     plausible, so u = ±/√3 (van der Veen, Meija, Possolo, Hibbert, Pure Appl. Chem. 93, 629, 2021, from memory).
+    Sources and status stand in reference_data/atomic_weights.csv. Elements without a standard weight are left out,
+    but for radium, which reference tables know as a salt former: mass of its nuclide 226.
+
+    Raises
+    ------
+    FileNotFoundError
+        If the tables are not where the package was installed.
+    ValueError
+        If a row of the table cannot be read; names file and row.
 
     Examples
     --------
@@ -51,8 +35,20 @@ def standard_atomic_weights() -> MappingProxyType[str, tuple[float, float]]:
     >>> value, round(u, 4)
     (35.45, 0.0058)
     """
-    rows = (row.split() for row in _TABLE.replace("\n", " ").split(";"))
-    return MappingProxyType({name: (float(value), float(half) / sqrt(3)) for name, value, half in rows})
+    return MappingProxyType(_read(tables_folder() / FILE))
+
+
+def _read(path: Path) -> dict[str, tuple[float, float]]:
+    """Only what formulae need; reconcile.reference holds the whole table to its description."""
+    weights: dict[str, tuple[float, float]] = {}
+    with path.open(encoding="utf-8", newline="") as file:
+        for row, cells in enumerate(csv.DictReader(file), start=2):
+            try:
+                weights[cells["element"]] = float(cells[_VALUE]), float(cells[_U])
+            except (KeyError, TypeError, ValueError) as fault:
+                expected = f"an element and numbers below `{_VALUE}` and `{_U}`"
+                raise ValueError(f"{path.name}, row {row}: expected {expected}; install reconcile anew") from fault
+    return weights
 
 
 ELEMENTS = frozenset(standard_atomic_weights())

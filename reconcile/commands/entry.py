@@ -16,6 +16,7 @@ DONE, INTERNAL, PROBLEMS = 0, 1, 2
 COMMANDS: Mapping[str, tuple[str, str]] = {  # name ─► module, what --help says
     "report": ("reconcile.commands.report", "The whole job: from runs to the finished report."),
     "check": ("reconcile.commands.check", "Read a campaign, say what is wrong or assumed, write nothing."),
+    "lookup": ("reconcile.commands.lookup", "Every reference value held about a salt or ion, with source."),
     "demo": ("reconcile.commands.demo", "An invented campaign, from its tables to the finished report."),
 }
 _TRACEBACK = "RECONCILE_TRACEBACK"

@@ -6,11 +6,14 @@ import csv
 import io
 import re
 from collections.abc import Iterator, Sequence
-
-import numpy as np
-import pandas as pd
+from math import isfinite, nan
+from typing import Any
 
 from reconcile.reference.description import Column, TableDescription
+
+Row = dict[
+    str, Any
+]  # heading: str, float (NaN where nothing stands), int or None, bool; and `row` as a spreadsheet counts
 
 
 class ReferenceDataError(Exception):
@@ -27,8 +30,8 @@ def problem(table: TableDescription, row: int, heading: str, found: object, expe
     return f"{table.file}, row {row}, `{heading}`: {shown}. Expected {expected}."
 
 
-def read_table(text: str, table: TableDescription) -> pd.DataFrame:
-    """Cells of a CSV text, typed as described.
+def read_rows(text: str, table: TableDescription) -> list[Row]:
+    """Cells of a CSV text, typed as described; needs neither numpy nor pandas.
 
     Parameters
     ----------
@@ -39,9 +42,9 @@ def read_table(text: str, table: TableDescription) -> pd.DataFrame:
 
     Returns
     -------
-    frame : DataFrame
-        Columns under their headings: text as str (empty where nothing stands), numbers as float64 (NaN), integers
-        as Int64, booleans as bool; and `row`, counted as a spreadsheet does.
+    rows : list of dict
+        By heading: text as str ("" where nothing stands), numbers as float (NaN), integers as int (None), booleans as
+        bool; and `row`, counted as a spreadsheet does.
 
     Raises
     ------
@@ -61,15 +64,13 @@ def read_table(text: str, table: TableDescription) -> pd.DataFrame:
     if lengths:
         raise ReferenceDataError(lengths)
     faults: list[str] = []
-    columns: dict[str, object] = {}
-    for column, cells in zip(table.columns, zip(*body, strict=True) if body else [()] * len(headings), strict=True):
-        columns[column.heading] = _typed(list(cells), column, table, faults)
+    cells = zip(*body, strict=True) if body else iter([()] * len(headings))
+    columns = [_typed(column, typed, table, faults) for column, typed in zip(table.columns, cells, strict=True)]
     faults += _repeated_keys(body, headings, table)
     if faults:
         raise ReferenceDataError(faults)
-    frame = pd.DataFrame(columns)
-    frame["row"] = np.arange(2, len(body) + 2)
-    return frame
+    names = [*headings, "row"]
+    return [dict(zip(names, row, strict=True)) for row in zip(*columns, range(2, len(body) + 2), strict=True)]
 
 
 def _heading_faults(found: list[str], expected: list[str], table: TableDescription) -> Iterator[str]:
@@ -85,56 +86,65 @@ def _heading_faults(found: list[str], expected: list[str], table: TableDescripti
         yield f"{table.file}, row 1, heading: order differs from datapackage.json."
 
 
-def _typed(cells: list[str], column: Column, table: TableDescription, faults: list[str]) -> object:
+def _typed(column: Column, cells: Sequence[str], table: TableDescription, faults: list[str]) -> list[Any]:
     """The column's values; what is wrong goes into faults."""
-
-    def fault(position: int, expected: str) -> None:
-        faults.append(problem(table, position + 2, column.heading, cells[position], expected))
-
-    for i, cell in enumerate(cells):
-        if cell != cell.strip():
-            fault(i, "no blanks at either end")
-        elif column.required and not cell:
-            fault(i, "an entry: every row has one here")
+    wrong = {
+        **{i: "no blanks at either end" for i, cell in enumerate(cells) if cell != cell.strip()},
+        **{i: "an entry: every row has one here" for i, cell in enumerate(cells) if column.required and not cell},
+    }
     if column.kind == "string":
-        pattern = re.compile(column.pattern) if column.pattern else None
-        for i, cell in enumerate(cells):
-            if cell and column.allowed and cell not in column.allowed:
-                fault(i, " or ".join(column.allowed))
-            elif cell and pattern and not pattern.match(cell):
-                fault(i, f"a text of the form {column.pattern}")
-        return cells
-    if column.kind == "boolean":
-        for i, cell in enumerate(cells):
-            if cell not in ("true", "false"):
-                fault(i, "true or false")
-        return [cell == "true" for cell in cells]
-    values = np.full(len(cells), np.nan)
+        values: list[Any] = list(cells)
+        wrong |= _wrong_texts(column, cells)
+    elif column.kind == "boolean":
+        values = [cell == "true" for cell in cells]
+        wrong |= {i: "true or false" for i, cell in enumerate(cells) if cell not in ("true", "false")}
+    else:
+        values, wrong_numbers = _numbers(column, cells)
+        wrong = wrong_numbers | wrong
+    faults += [problem(table, i + 2, column.heading, cells[i], expected) for i, expected in sorted(wrong.items())]
+    return values
+
+
+def _wrong_texts(column: Column, cells: Sequence[str]) -> dict[int, str]:
+    if column.allowed:
+        expected = " or ".join(column.allowed)
+        return {i: expected for i, cell in enumerate(cells) if cell and cell not in column.allowed}
+    if column.pattern:
+        pattern = re.compile(column.pattern)
+        expected = f"a text of the form {column.pattern}"
+        return {i: expected for i, cell in enumerate(cells) if cell and not pattern.match(cell)}
+    return {}
+
+
+def _numbers(column: Column, cells: Sequence[str]) -> tuple[list[Any], dict[int, str]]:
+    whole = column.kind == "integer"
+    values: list[Any] = [None if whole else nan] * len(cells)
+    wrong: dict[int, str] = {}
     for i, cell in enumerate(cells):
         if not cell:
             continue
         try:
-            values[i] = float(cell)
+            value = float(cell)
         except ValueError:
-            fault(i, "a number")
+            wrong[i] = "a number"
             continue
-        if not np.isfinite(values[i]):
-            fault(i, "a finite number; nothing at all where none is known")
-        elif not (column.minimum <= values[i] <= column.maximum and column.above < values[i] < column.below):
-            fault(i, _limits(column))
-        elif column.kind == "integer" and values[i] != int(values[i]):
-            fault(i, "a whole number")
-    if column.kind == "integer":
-        return pd.array([None if np.isnan(value) else int(value) for value in values], dtype="Int64")
-    return values
+        if not isfinite(value):
+            wrong[i] = "a finite number; nothing at all where none is known"
+        elif not (column.minimum <= value <= column.maximum and column.above < value < column.below):
+            wrong[i] = _limits(column)
+        elif whole and value != int(value):
+            wrong[i] = "a whole number"
+        else:
+            values[i] = int(value) if whole else value
+    return values, wrong
 
 
 def _limits(column: Column) -> str:
     bounds = [
-        f"at least {column.minimum:g}" if np.isfinite(column.minimum) else "",
-        f"at most {column.maximum:g}" if np.isfinite(column.maximum) else "",
-        f"more than {column.above:g}" if np.isfinite(column.above) else "",
-        f"less than {column.below:g}" if np.isfinite(column.below) else "",
+        f"at least {column.minimum:g}" if isfinite(column.minimum) else "",
+        f"at most {column.maximum:g}" if isfinite(column.maximum) else "",
+        f"more than {column.above:g}" if isfinite(column.above) else "",
+        f"less than {column.below:g}" if isfinite(column.below) else "",
     ]
     return " and ".join(bound for bound in bounds if bound)
 

@@ -1,4 +1,4 @@
-"""The tables against each other, and how many rows they have: two pages of reference_data/README.md.
+"""The tables against each other, and how many rows they have: the pages of reference_data/README.md.
 
 Anyone may write them anew: python -m reconcile.reference.consistency
 """
@@ -6,17 +6,18 @@ Anyone may write them anew: python -m reconcile.reference.consistency
 from __future__ import annotations
 
 import sys
-from collections.abc import Sequence
+from collections.abc import Callable, Mapping, Sequence
 from pathlib import Path
 
 import numpy as np
 import pandas as pd
 
 from reconcile.chemistry import Salt, read_salt
-from reconcile.reference.folder import tables_folder
+from reconcile.chemistry.folder import tables_folder
 from reconcile.reference.formation import formation_enthalpies
-from reconcile.reference.solution import ranked
-from reconcile.reference.tables import table, table_names
+from reconcile.reference.lattice import lattice_spread
+from reconcile.reference.limits import is_limit
+from reconcile.reference.tables import rows, table, table_names
 
 CLOSES = 0.5  # kJ/mol, where a check of our own transcription calls a cycle closed
 # (set of the ions, set of the crystals); the last is a mixture and stands there as a warning
@@ -60,8 +61,7 @@ def cycle_differences(ions_of: str = "NBS-1982", crystals_of: str = "NBS-1982") 
     crystals = crystals[crystals["phase"].eq("cr")].set_index("identity")
     aqueous = ions[ions["phase"].eq("aq")].set_index("species")
     liquid = ions[ions["species"].eq("H2O")]
-    published = ranked()
-    published = published[published["reference_set"].eq("Parker-1965") & published["phase"].eq("cr")].sort_values("row")
+    published = _parker()
     salts = [read_salt(formula) for formula in published["salt"]]
     keep = [salt.identity in crystals.index and all(ion in aqueous.index for ion, _ in salt.ions) for salt in salts]
     salts = [salt for salt, kept in zip(salts, keep, strict=True) if kept]
@@ -83,6 +83,17 @@ def cycle_differences(ions_of: str = "NBS-1982", crystals_of: str = "NBS-1982") 
             "status": published["status"],
         }
     )
+
+
+def _parker() -> pd.DataFrame:
+    """Salts of Parker's table at infinite dilution: salt, value, u / (kJ/mol), status."""
+    value, u = "solution_enthalpy / (kJ/mol)", "u(solution_enthalpy) / (kJ/mol)"
+    kept = [
+        (row["salt"], row[value], row[u], row["status"])
+        for row in rows("solution_enthalpy")
+        if is_limit(row) and row["reference_set"] == "Parker-1965" and row["phase"] == "cr"
+    ]
+    return pd.DataFrame(kept, columns=["salt", "value", "u", "status"])
 
 
 def _sum_of_ions(salts: Sequence[Salt], aqueous: pd.DataFrame) -> tuple[np.ndarray, np.ndarray]:
@@ -146,6 +157,31 @@ def consistency_page() -> str:
     return "\n".join(lines)
 
 
+def lattice_page() -> str:
+    """How far lattice potential energies from sizes lie from those of the cycles, by class (Markdown)."""
+    lines = [
+        "Computed over tabulated (Σν gaseous ions − crystal, taken to U_pot) less 1: its median, and about it the",
+        "robust standard deviation that serves as relative standard uncertainty; for all salts with the scatter of the",
+        "offsets.",
+        "",
+        "| method | class | salts | offset / % | spread / % | farthest from the offset / % |",
+        "|---|---|---|---|---|---|",
+    ]
+    for row in lattice_spread().reset_index().to_dict("records"):
+        lines.append(
+            f"| {row['method']} | {row['class']} | {row['salts']} | {100 * row['offset']:+.1f} "
+            f"| {100 * row['spread']:.1f} | {row['farthest']} {100 * row['largest']:.0f} |"
+        )
+    return "\n".join(lines)
+
+
+PAGES: Mapping[str, Callable[[], str]] = {
+    "counts": counts_page,
+    "consistency": consistency_page,
+    "lattice": lattice_page,
+}
+
+
 def between_markers(text: str, name: str, page: str) -> str:
     """The text with a page put between <!-- name: begin --> and <!-- name: end -->.
 
@@ -163,12 +199,14 @@ def between_markers(text: str, name: str, page: str) -> str:
 
 
 def up_to_date(text: str) -> str:
-    """README.md with both pages as the tables give them now."""
-    return between_markers(between_markers(text, "counts", counts_page()), "consistency", consistency_page())
+    """README.md with every page as the tables give it now."""
+    for name, page in PAGES.items():
+        text = between_markers(text, name, page())
+    return text
 
 
 def main(folder: Path | None = None) -> int:
-    """Write both pages into README.md of the tables' folder; says whether they had changed."""
+    """Write the pages into README.md of the tables' folder; says whether they had changed."""
     readme = (folder or tables_folder()) / "README.md"
     before = readme.read_text(encoding="utf-8")
     after = up_to_date(before)

@@ -7,7 +7,7 @@ from functools import lru_cache
 import pandas as pd
 
 from reconcile.chemistry import read_salt
-from reconcile.reference.identities import years
+from reconcile.reference.identities import year_text
 from reconcile.reference.tables import table
 
 DILUTE = 0.2  # mol/kg; a ∂Cᵠ/∂T of exactly 0 in a set fitted up to here was not determined
@@ -32,7 +32,7 @@ def _all() -> pd.DataFrame:
     not_determined = frame["c_phi"].eq(0) & ~(frame["max_molality"] > DILUTE)
     frame["c_phi_determined"] = ~not_determined
     frame["charge_type"] = [read_salt(electrolyte).charge_type for electrolyte in frame["electrolyte"]]
-    frame["year"] = years(frame)
+    frame["year"] = [year_text(None if pd.isna(year) else int(year)) for year in frame["year"]]
     columns = ["electrolyte", "charge_type", "beta0", "beta1", "beta2", "c_phi", "c_phi_determined", "alpha1", "alpha2"]
     columns += ["b", "slope", "temperature", "max_molality", "u_relative_enthalpy", "u_basis", "preferred", "why"]
     return frame[[*columns, "reference_set", "source", "read_in", "year", "status", "note"]]

@@ -6,7 +6,7 @@ from functools import lru_cache
 
 import pandas as pd
 
-from reconcile.reference.identities import identities, years
+from reconcile.reference.identities import identities, year_text
 from reconcile.reference.tables import table
 
 COLUMNS = (
@@ -72,7 +72,7 @@ def _set(set_name: str) -> pd.DataFrame:
     frame["value"] = frame["formation_enthalpy / (kJ/mol)"]
     frame["u"] = frame["u(formation_enthalpy) / (kJ/mol)"]
     frame["charge"] = frame["charge"].astype("int64")
-    frame["year"] = years(frame)
+    frame["year"] = [year_text(None if pd.isna(year) else int(year)) for year in frame["year"]]
     crystal = frame["phase"].eq("cr")
     frame["identity"] = frame["species"].where(~crystal, identities(frame["species"]))
     return frame[list(COLUMNS)]

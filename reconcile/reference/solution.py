@@ -3,33 +3,15 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from functools import lru_cache
 
+import numpy as np
 import pandas as pd
 
-from reconcile.reference.identities import STATUS_ORDER, at, best_rows, identities, years
-from reconcile.reference.tables import table
+from reconcile.reference.identities import identities, year_text
+from reconcile.reference.limits import ranked_limits
 
-# Evaluated tables before single papers; an ions-minus-crystal row only where nobody measured.
-SET_ORDER = {"Parker-1965": 0, "certificates": 1, "Archer-1992": 2, "measured": 3}
 TEXTS = ("salt", "phase", "u_basis", "source", "read_in", "year", "status", "reference_set", "taken_over_by", "note")
-COLUMNS = ("value", "u", "independent", *TEXTS)
-
-
-@lru_cache(maxsize=1)
-def ranked() -> pd.DataFrame:
-    """Rows at infinite dilution and 298.15 K, best first, with why the best of a salt is the best."""
-    frame = table("solution_enthalpy")
-    frame = frame[frame["molality / (mol/kg)"].eq(0) & frame["temperature / K"].eq(298.15)].copy()
-    frame["value"] = frame["solution_enthalpy / (kJ/mol)"]
-    frame["u"] = frame["u(solution_enthalpy) / (kJ/mol)"]
-    frame["independent"] = frame["origin"].eq("measurement")
-    frame["year"] = years(frame)
-    frame["identity"] = identities(frame["salt"])
-    frame["origin_rank"] = (~frame["independent"]).astype(int)
-    frame["status_rank"] = frame["status"].map(STATUS_ORDER)
-    frame["set_rank"] = frame["reference_set"].map(SET_ORDER).fillna(len(SET_ORDER))
-    return frame.sort_values(["origin_rank", "status_rank", "set_rank"], kind="stable")
+_NONE = {"value": np.nan, "u": np.nan, "independent": False} | dict.fromkeys(TEXTS, "")
 
 
 def solution_enthalpies(formulas: Sequence[str]) -> pd.DataFrame:
@@ -56,7 +38,18 @@ def solution_enthalpies(formulas: Sequence[str]) -> pd.DataFrame:
     >>> [float(value) for value in frame["value"]], [bool(value) for value in frame["independent"]]
     ([17.22, 15.77], [True, False])
     """
-    best = best_rows(ranked(), "identity", ("origin_rank", "status_rank", "set_rank"))
-    found = at(best[list(COLUMNS)], identities(formulas), formulas, TEXTS)
-    found["independent"] = found["independent"].eq(True)
-    return found
+    held = ranked_limits()
+    taken = [_as_given(found[0]) if (found := held.get(key)) else _NONE for key in identities(formulas)]
+    index = pd.Index(list(formulas), dtype=object)
+    frame = pd.DataFrame(taken, index=index, columns=["value", "u", "independent", *TEXTS])
+    return frame.astype({"value": float, "u": float, "independent": bool} | dict.fromkeys(TEXTS, object))
+
+
+def _as_given(row: dict[str, object]) -> dict[str, object]:
+    year = row["year"]
+    return row | {
+        "value": row["solution_enthalpy / (kJ/mol)"],
+        "u": row["u(solution_enthalpy) / (kJ/mol)"],
+        "independent": row["origin"] == "measurement",
+        "year": year_text(year if isinstance(year, int) else None),
+    }

@@ -2,8 +2,8 @@
 
 import pytest
 
+from reconcile.chemistry.folder import tables_folder
 from reconcile.reference import consistency
-from reconcile.reference.folder import tables_folder
 
 
 def test_readme_is_up_to_date():
@@ -14,7 +14,8 @@ def test_readme_is_up_to_date():
 def test_the_command_writes_the_pages(tmp_path, capsys):
     readme = tmp_path / "README.md"
     readme.write_text(
-        "a\n<!-- counts: begin -->old<!-- counts: end -->\nb\n<!-- consistency: begin --><!-- consistency: end -->c"
+        "a\n<!-- counts: begin -->old<!-- counts: end -->\nb\n<!-- consistency: begin --><!-- consistency: end -->\n"
+        "<!-- lattice: begin --><!-- lattice: end -->c"
     )
     assert consistency.main(tmp_path) == 0
     assert "written" in capsys.readouterr().out
@@ -23,6 +24,7 @@ def test_the_command_writes_the_pages(tmp_path, capsys):
     assert text.startswith("a\n")
     assert text.endswith("c")
     assert "| NaCN |" in text
+    assert "| Kapustinskii | all salts |" in text
     consistency.main(tmp_path)
     assert "unchanged" in capsys.readouterr().out
 

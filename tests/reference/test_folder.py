@@ -7,7 +7,7 @@ from pathlib import Path
 
 import pytest
 
-from reconcile.reference.folder import PACKAGE, tables_folder
+from reconcile.chemistry.folder import PACKAGE, tables_folder
 
 
 def test_a_checkout_has_them_beside_the_package():
@@ -36,7 +36,7 @@ def test_the_layout_of_a_wheel_answers(tmp_path):
     shutil.copytree(tables_folder(), installed / "reconcile" / "reference_data")
     program = (
         "import sys; sys.path.insert(0, sys.argv[1]);"
-        "from reconcile import reference; from reconcile.reference.folder import tables_folder;"
+        "from reconcile import reference; from reconcile.chemistry.folder import tables_folder;"
         "print(tables_folder()); print(reference.solution_enthalpies(['NaCl'])['value'].iloc[0])"
     )
     result = subprocess.run(

@@ -74,7 +74,8 @@ def test_dilution_parameters():
     assert frame.loc["NaCl", "slope"] == 1.972
     assert frame.loc["NaCl", "max_molality"] > 1
     assert frame.loc["NaCl", "u_relative_enthalpy"] < 0.05
-    assert np.isnan(frame.loc["KCl", "slope"])
+    assert frame.loc["KCl", "slope"] == 1.972  # fitted to Parker 1965 with the slope used here
+    assert np.isnan(frame.loc["KBr", "slope"])
     assert not frame.loc["KClO4", "c_phi_determined"]  # 0 in a set up to 0.1 mol/kg
     assert frame.loc["NaF", "c_phi_determined"]  # 0 in a set up to 0.7 mol/kg
     assert not frame.loc["RbCl", "c_phi_determined"]  # 0, range unknown

@@ -4,8 +4,8 @@ import shutil
 
 import pytest
 
+from reconcile.chemistry.folder import tables_folder
 from reconcile.reference import ReferenceDataError, table_names
-from reconcile.reference.folder import tables_folder
 from reconcile.reference.tables import load, table
 
 
@@ -141,6 +141,28 @@ def test_a_gaseous_ion_without_electron_convention(folder):
     spoil(folder, "formation_enthalpy", row, "electron_convention", "")
     with pytest.raises(ReferenceDataError, match=rf"row {row}, `electron_convention`"):
         load("formation_enthalpy", folder)
+
+
+def test_a_gaseous_proton_without_its_electron(folder):
+    "1530.0 is 1536.25 less 6.197: the other convention."
+    row = row_of("formation_enthalpy", species="H+", phase="g", reference_set="CRC-atoms+IE")
+    spoil(folder, "formation_enthalpy", row, "formation_enthalpy / (kJ/mol)", "1530.05")
+    with pytest.raises(ReferenceDataError, match=rf"row {row}, .*electron as a gas"):
+        load("formation_enthalpy", folder)
+
+
+def test_a_radius_of_1979_under_the_name_of_1999(folder):
+    row = row_of("ionic_radius", ion="NO3-", reference_set="thermochemical-1999")
+    spoil(folder, "ionic_radius", row, "radius / nm", "0.179")
+    with pytest.raises(ReferenceDataError, match=rf"row {row}, .*1979"):
+        load("ionic_radius", folder)
+
+
+def test_a_half_width_taken_for_a_standard_uncertainty(folder):
+    row = row_of("atomic_weights", element="Li")
+    spoil(folder, "atomic_weights", row, "u(standard_atomic_weight) / 1", "0.06")
+    with pytest.raises(ReferenceDataError, match=rf"row {row}, .*over √3"):
+        load("atomic_weights", folder)
 
 
 def test_an_unbalanced_crystal_and_a_wrong_charge(folder):

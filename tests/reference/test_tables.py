@@ -2,12 +2,14 @@
 
 import json
 
+import pandas as pd
 import pytest
 
 from reconcile.chemistry import read_ion, read_salt
-from reconcile.reference import table, table_names
+from reconcile.chemistry.folder import tables_folder
+from reconcile.reference import heat_capacity_changes, table, table_names
 from reconcile.reference.description import descriptions
-from reconcile.reference.folder import tables_folder
+from reconcile.reference.tables import rows
 
 
 @pytest.mark.parametrize("name", table_names())
@@ -41,6 +43,18 @@ def test_the_description_is_a_data_package():
         assert set(resource["schema"]["primaryKey"]) <= set(names)
 
 
+def test_rows_and_frame_are_one_truth():
+    "lookup reads plain rows, reports read frames: cell by cell the same."
+    for name in table_names():
+        held, frame = rows(name), table(name)
+        assert len(held) == len(frame)
+        for column in frame.columns:
+            cells = [row[column] for row in held]
+            for cell, framed in zip(cells, frame[column], strict=True):
+                missing = cell is None or cell != cell
+                assert pd.isna(framed) if missing else framed == cell, (name, column)
+
+
 def test_enough_is_held():
     formation = table("formation_enthalpy")
     nbs = formation[formation["reference_set"].eq("NBS-1982")]
@@ -53,9 +67,12 @@ def test_enough_is_held():
     assert limits["salt"].nunique() >= 130
     assert limits["salt"].str.contains("H2O").sum() >= 20
     assert table("pitzer_enthalpy")["electrolyte"].nunique() >= 60
-    assert table("heat_capacity")["species"].nunique() >= 40
     assert table("lattice_enthalpy")["salt"].nunique() >= 60
-    assert table("hydration_enthalpy")["ion"].nunique() >= 40
+    hydration = table("hydration_enthalpy")
+    assert hydration.groupby("proton_hydration / (kJ/mol)")["ion"].nunique().max() >= 40
+    salts = [read_salt(name) for name in formation.loc[formation["phase"].eq("cr"), "species"].unique()]
+    changes = heat_capacity_changes(salts)["value"].dropna()
+    assert len({read_salt(name).electrolyte for name in changes.index}) >= 40
 
 
 def test_salts_and_ions_are_spelled_as_chemistry_spells_them():

@@ -1,10 +1,17 @@
 """lookup: spelling, what is used and why, the nearest known."""
 
 import json
+import subprocess
+import sys
 
 import pytest
 
+import reconcile
+from reconcile import reference
+from reconcile.chemistry import read_salt
+from reconcile.commands import main
 from reconcile.reference import UnknownSpeciesError, lookup
+from reconcile.reference.species import known_salts
 
 
 def used(result, quantity):
@@ -82,3 +89,49 @@ def test_a_salt_of_which_nothing_is_held_gets_the_nearest():
     result = lookup("Rb2SeO4")
     assert result["values"] == []
     assert "Rb2SO4" in result["nearest"]
+
+
+def test_lookup_and_reports_take_the_same_values():
+    "For every salt held: enthalpy of solution, heat capacity change, parameters, crystal of the set."
+    salts = [name for name in known_salts() if name not in ("CO(NH2)2", "C12H22O11")]
+    solution = reference.solution_enthalpies(salts)["value"]
+    change = reference.heat_capacity_changes([read_salt(name) for name in salts])["value"]
+    dilution = reference.dilution_parameters()["beta0"]
+    crystals = reference.formation_enthalpies()
+    crystals = crystals[crystals["phase"].eq("cr")].set_index("identity")["value"]
+    for name in salts:
+        salt, result = read_salt(name), lookup(name)
+        expected = {
+            "solution_enthalpy": solution[name],
+            "heat_capacity_change": change[salt.formula],
+            "beta0_derivative": dilution.get(salt.electrolyte, float("nan")),
+            "formation_enthalpy": crystals.get(salt.identity, float("nan")),
+        }
+        for quantity, value in expected.items():
+            shown = [entry["value"] for entry in used(result, quantity)]
+            assert shown == ([] if value != value else [value]), (name, quantity)
+
+
+def test_it_is_public_and_lazy():
+    assert reconcile.lookup is lookup
+    program = (
+        "import sys; from reconcile import lookup;"
+        "[lookup(text) for text in ('CaCl2.6H2O', 'Ca(NO3)2', 'Na+', 'SO4^2-', 'Rb2SeO4', 'H2O')];"
+        "print([name for name in ('numpy', 'pandas', 'scipy', 'pint', 'chemicals') if name in sys.modules])"
+    )
+    done = subprocess.run([sys.executable, "-c", program], capture_output=True, text=True, check=True)
+    assert done.stdout.strip() == "[]"
+
+
+@pytest.mark.parametrize(
+    ("typed", "status"),
+    [("CaCl2·6H2O", 0), ("SO4^2-", 0), ("Rb2SeO4", 0), ("NaCll", 2), ("Ca2+", 2), ("", 2), ("Xx", 2)],
+)
+def test_exit_status_of_the_command(typed, status, capsys):
+    assert main(["lookup", typed]) == status
+    shown = capsys.readouterr()
+    assert bool(shown.out) == (status == 0)
+    assert bool(shown.err) == (status == 2)
+    assert main(["lookup", typed, "--json"]) == status
+    text = capsys.readouterr().out
+    assert json.loads(text)["species"] if status == 0 else text == ""

@@ -1,4 +1,4 @@
-"""Where the tables lie: beside the package in a checkout, inside it in a wheel."""
+"""Where the tables of published values lie: beside the package in a checkout, inside it in a wheel."""
 
 from __future__ import annotations
 

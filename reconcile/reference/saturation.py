@@ -4,13 +4,12 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
+import numpy as np
 import pandas as pd
 
 from reconcile.chemistry import FormulaError, read_salt
-from reconcile.reference.identities import at, years
-from reconcile.reference.tables import table
-
-TEXTS = ("source", "year", "status")
+from reconcile.reference.identities import year_text
+from reconcile.reference.tables import rows
 
 
 def solubility(formulas: Sequence[str]) -> pd.DataFrame:
@@ -31,14 +30,16 @@ def solubility(formulas: Sequence[str]) -> pd.DataFrame:
     >>> float(solubility(["NaCl"]).loc["NaCl", "molality"].round(2))
     6.16
     """
-    frame = table("solubility")
-    salts = [read_salt(formula) for formula in frame["salt"]]
-    mass = pd.Series([salt.molar_mass_anhydrous for salt in salts], index=frame.index)
-    frame["molality"] = 10 * frame["solubility / (g/100 g)"] / mass
-    frame["u"] = 10 * frame["u(solubility) / (g/100 g)"] / mass
-    frame["year"] = years(frame)
-    frame.index = pd.Index([salt.electrolyte for salt in salts])
-    return at(frame[["molality", "u", *TEXTS]], [_electrolyte(formula) for formula in formulas], formulas, TEXTS)
+    held: dict[str, tuple[float, float, str, str, str]] = {}
+    for row in rows("solubility"):
+        salt = read_salt(row["salt"])
+        per_gram = 10 / salt.molar_mass_anhydrous
+        molality = per_gram * row["solubility / (g/100 g)"], per_gram * row["u(solubility) / (g/100 g)"]
+        held[salt.electrolyte] = *molality, row["source"], year_text(row["year"]), row["status"]
+    found = [held.get(_electrolyte(formula), (np.nan, np.nan, "", "", "")) for formula in formulas]
+    frame = pd.DataFrame(found, columns=["molality", "u", "source", "year", "status"], dtype=object)
+    frame.index = pd.Index(list(formulas), dtype=object)
+    return frame.astype({"molality": float, "u": float})
 
 
 def _electrolyte(formula: str) -> str:
