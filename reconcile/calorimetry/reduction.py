@@ -14,6 +14,7 @@ from reconcile.statistics import Collector, Ledger
 
 Floats = NDArray[np.float64]
 Integers = NDArray[np.int64]
+Booleans = NDArray[np.bool_]
 
 LINES = ("heat", "weighing of the salt", "weighing of the water", "enthalpy as given", "molality as given")
 
@@ -23,7 +24,11 @@ class ReducedRuns:
     """What the calorimeters say, run by run, at each run's own temperature and molality."""
 
     enthalpy: Ledger  # kJ/mol, (n,)
-    molality: Ledger  # mol/kg, (n,); the same private errors and sources as the enthalpies
+    molality: Ledger  # mol/kg, of the final solution, (n,); the same private errors and sources as the enthalpies
+    initial_molality: Floats  # mol/kg, of the solvent before the run, (n,); 0 for water
+    u_initial_molality: Floats  # mol/kg, 0 where none is given
+    initial_share: Floats  # n₁/(n₂ − n₁): moles of salt there before, a mole added; 1 for a heat of dilution
+    dissolves: NDArray[np.bool_]  # (n,) False for a heat of dilution
     amount: Floats  # mol of salt dissolved, NaN where the row gave no mass
     temperature: Floats  # K
     u_temperature: Floats  # K, 0 where none is given
@@ -48,7 +53,8 @@ def reduce_runs(campaign: Campaign) -> ReducedRuns:
     Sensitivities are the partial derivatives of `molar_enthalpy` and `molality_over_all_water` (GUM, 5.1).
     """
     runs, samples, calorimeters = campaign.runs, campaign.samples, campaign.calorimeters
-    q = {name: runs.quantities[name] for name in ("mass", "water", "molality", "temperature", "heat", "enthalpy")}
+    names = ("mass", "water", "molality", "temperature", "heat", "enthalpy", "initial_molality", "final_molality")
+    q = {name: runs.quantities[name] for name in names}
     by_heat = np.isfinite(q["heat"].value)
     of_salt = campaign.salt
     molar_mass = np.array([s.molar_mass for s in campaign.salts])[of_salt]
@@ -71,15 +77,22 @@ def reduce_runs(campaign: Campaign) -> ReducedRuns:
     heat = np.where(by_heat, q["heat"].value - stray, 0.0)
     amount = np.where(weighed, mass * w / molar_mass, np.nan)
     enthalpy = np.where(by_heat, molar_enthalpy(heat, mass, molar_mass, w), q["enthalpy"].value)
-    molality = np.where(weighed, molality_over_all_water(mass, water, molar_mass, w, hydrate, x), q["molality"].value)
+    initial = np.where(np.isfinite(q["initial_molality"].value), q["initial_molality"].value, 0.0)
+    dissolves = ~np.isfinite(q["final_molality"].value)
+    added = molality_over_all_water(mass, water, molar_mass, w, hydrate, x)
+    solvent = water + mass * (w * hydrate * MOLAR_MASS_OF_WATER / molar_mass + x)
+    by_mass = added + initial * water / solvent  # the salt that was there is in the water as weighed
+    typed = np.where(dissolves, q["molality"].value, q["final_molality"].value)
+    molality = np.where(weighed, by_mass, typed)
+    share = _initial_share(initial, molality, np.where(weighed, added * solvent / water, np.nan), hydrate, dissolves)
 
     # sensitivities; an enthalpy already reduced has none to the weighings
     h, k = by_heat / 1.0, weighed / 1.0
-    solvent = water + mass * (w * hydrate * MOLAR_MASS_OF_WATER / molar_mass + x)
     per_joule = h * molar_mass / (mass * w) / 1000  # kJ/mol a joule
-    molality_per_mass = k * molality / mass * water / solvent
-    molality_per_water = -k * molality / solvent
-    molality_per_purity = k * molality / w * (1 - mass * w * hydrate * MOLAR_MASS_OF_WATER / molar_mass / solvent)
+    bound = mass * w * hydrate * MOLAR_MASS_OF_WATER / molar_mass  # g, water of hydration
+    molality_per_mass = k * (added * solvent - molality * (solvent - water)) / (mass * solvent)
+    molality_per_water = k * (initial - molality) / solvent
+    molality_per_purity = k * (added * solvent - molality * bound) / (w * solvent)
     molality_per_lot_water = -k * molality * mass / solvent
     linked = ~_per_run(purity_given, campaign.sample, True).astype(bool)  # mass fraction = 1 − water there
     enthalpy_per_lot_water = np.where(linked, h * enthalpy / w, 0.0)
@@ -101,7 +114,7 @@ def reduce_runs(campaign: Campaign) -> ReducedRuns:
             molality_per_mass * _known(q["mass"].u),
             molality_per_water * _known(q["water"].u),
             zero,
-            np.where(weighed, 0.0, _known(q["molality"].u)),
+            np.where(weighed, 0.0, np.where(dissolves, _known(q["molality"].u), _known(q["final_molality"].u))),
         ]
     )
 
@@ -120,18 +133,32 @@ def reduce_runs(campaign: Campaign) -> ReducedRuns:
         campaign.calorimeter, u_parasitic, [f"calorimeter {c}: parasitic heat" for c in calorimeter_names],
         "parasitic heat", -per_joule, zero,
     )  # fmt: skip
-    _atomic_weights(shared, campaign, h * enthalpy / molar_mass, -k * molality / molar_mass)
+    _atomic_weights(shared, campaign, h * enthalpy / molar_mass, -molality_per_purity * w / molar_mass)
     sources, (loading_enthalpy, loading_molality) = shared.finish()
     temperature = q["temperature"]
     return ReducedRuns(
         enthalpy=Ledger(enthalpy, private_enthalpy, LINES, loading_enthalpy, sources),
         molality=Ledger(molality, private_molality, LINES, loading_molality, sources),
+        initial_molality=initial,
+        u_initial_molality=_known(q["initial_molality"].u),
+        initial_share=share,
+        dissolves=dissolves,
         amount=amount,
         temperature=temperature.value,
         u_temperature=_known(temperature.u),
         unstated=~(np.where(by_heat, q["heat"].u, q["enthalpy"].u) > 0),  # a 0 is no statement: nothing is exact
         lot_water=np.where(by_heat, enthalpy / w, 0.0),
     )
+
+
+def _initial_share(initial: Floats, final: Floats, added: Floats, hydrate: Floats, dissolves: Booleans) -> Floats:
+    """n₁/(n₂ − n₁): with `added` moles a kilogram of the first water where known, else from both molalities.
+
+    A hydrate brings its water along: per kilogram of the first water, (m₁ + a)/(1 + a h M_w) = m₂.
+    """
+    from_both = (final - initial) / (1 - final * hydrate * MOLAR_MASS_OF_WATER / 1000)
+    added = np.where(np.isfinite(added), added, from_both)
+    return np.where(dissolves, initial / np.where(added > 0, added, np.inf), 1.0)
 
 
 def _atomic_weights(shared: Collector, campaign: Campaign, enthalpy: Floats, molality: Floats) -> None:

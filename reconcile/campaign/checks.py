@@ -7,11 +7,13 @@ from difflib import get_close_matches
 
 import numpy as np
 
-from reconcile.campaign.columns import keys_of, quantities_of
+from reconcile.campaign.columns import keys_of
+from reconcile.campaign.dilutions import check_additions, check_dilutions, dilution_rows
 from reconcile.campaign.links import rows_of, tell_labels
+from reconcile.campaign.presence import heading_of, needed, there
 from reconcile.campaign.problems import Problems, number
 from reconcile.campaign.quantities import Built
-from reconcile.campaign.tables import Booleans, Floats, Integers, Remark, Table
+from reconcile.campaign.tables import Floats, Integers, Remark, Table
 from reconcile.chemistry import Salt
 
 WATER_MOLAR_MASS = 18.015  # g/mol; H 1.008, O 15.999, IUPAC 2021 conventional
@@ -58,9 +60,12 @@ def check_required(built: Built, names: Sequence[str], problems: Problems) -> No
 
 
 def check_runs(built: Built, problems: Problems) -> None:
-    """What every run must have: a salt, and a heat with masses or an enthalpy with a molality."""
+    """What every run must have: a salt, and a heat with masses or an enthalpy with a molality, or with two."""
     _salt_or_sample(built, problems)
-    heat, enthalpy = _there(built, "heat"), _there(built, "enthalpy")
+    dilution = dilution_rows(built)
+    check_dilutions(built, dilution, problems)
+    check_additions(built, dilution, problems)
+    heat, enthalpy = there(built, "heat"), there(built, "enthalpy")
     headings, table = built.headings, built.table
     if not headings.has("heat") and not headings.has("enthalpy"):
         problems.add(
@@ -70,33 +75,22 @@ def check_runs(built: Built, problems: Problems) -> None:
         )  # fmt: skip
         return
     if not {"heat", "enthalpy"} & headings.blamed:
-        place = _heading(built, "heat") or _heading(built, "enthalpy")
+        place = heading_of(built, "heat") or heading_of(built, "enthalpy")
         problems.add_rows(
-            table.name, rows_of(~heat & ~enthalpy, built), place, "neither a heat nor an enthalpy",
+            table.name, rows_of(~heat & ~enthalpy & ~dilution, built), place, "neither a heat nor an enthalpy",
             "one of the two", "Fill it in, or leave out the row.", "nothing measured",
         )  # fmt: skip
     problems.add_rows(
-        table.name, rows_of(heat & enthalpy, built), _heading(built, "heat"), "both a heat and an enthalpy",
-        "one of the two", "Empty one of the two cells.", "measured twice",
+        table.name, rows_of(heat & enthalpy & ~dilution, built), heading_of(built, "heat"),
+        "both a heat and an enthalpy", "one of the two", "Empty one of the two cells.", "measured twice",
     )  # fmt: skip
-    only_heat, only_enthalpy = heat & ~enthalpy, enthalpy & ~heat
-    for needed, rows, why in (
+    only_heat, only_enthalpy = heat & ~enthalpy & ~dilution, enthalpy & ~heat & ~dilution
+    for name, rows, why in (
         ("mass", only_heat, "a heat needs the mass of the salt"),
         ("water", only_heat, "a heat needs the amount of water"),
         ("molality", only_enthalpy, "an enthalpy needs its molality"),
     ):
-        _needed(built, needed, rows, why, problems)
-
-
-def _there(built: Built, name: str) -> Booleans:
-    """Rows that have a value, be it a bad one."""
-    present: Booleans = ~np.isnan(built.table.quantities[name].value) | built.bad[name]
-    return present
-
-
-def _heading(built: Built, name: str) -> str | None:
-    heading = built.headings.find(name)
-    return heading.text if heading else None
+        needed(built, name, rows, why, problems)
 
 
 def _salt_or_sample(built: Built, problems: Problems) -> None:
@@ -108,31 +102,11 @@ def _salt_or_sample(built: Built, problems: Problems) -> None:
         )  # fmt: skip
     elif not {"salt", "sample"} & headings.blamed:
         neither = (table.keys["salt"].code < 0) & (table.keys["sample"].code < 0)
-        place = _heading(built, "salt") or _heading(built, "sample")
+        place = heading_of(built, "salt") or heading_of(built, "sample")
         problems.add_rows(
             table.name, rows_of(neither, built), place, "neither a salt nor a sample", "one of the two",
             "Fill it in.", "empty cell",
         )  # fmt: skip
-
-
-def _needed(built: Built, name: str, rows: Booleans, why: str, problems: Problems) -> None:
-    """A quantity that some rows cannot do without."""
-    headings, table = built.headings, built.table
-    if name in headings.blamed or not rows.any():
-        return
-    column = next(column for column in quantities_of("runs") if column.name == name)
-    heading = headings.find(name)
-    if heading is None:
-        problems.add(
-            table.name, 1, None, f"there is no column `{column.heading}`; {why}", f"a column `{column.heading}`",
-            "Add it.", "missing column", (1, -1),
-        )  # fmt: skip
-        return
-    missing = rows & ~_there(built, name)
-    problems.add_rows(
-        table.name, rows_of(missing, built), heading.text, f"the cell is empty; {why}", column.dimension,
-        "Fill it in, or leave out the row.", "empty cell",
-    )  # fmt: skip
 
 
 def check_purity(built: Built, problems: Problems) -> None:
@@ -144,7 +118,7 @@ def check_purity(built: Built, problems: Problems) -> None:
     for position in over.tolist():
         total = float(fraction.value[position] + water.value[position])
         problems.add(
-            built.table.name, int(built.table.row[position]), _heading(built, "mass_fraction"),
+            built.table.name, int(built.table.row[position]), heading_of(built, "mass_fraction"),
             f"mass_fraction and water add up to {total:.6g}", "1 at most", "Correct one of the two.", "out of range",
         )  # fmt: skip
 
@@ -154,32 +128,37 @@ def contradictions(
 ) -> tuple[Remark, ...]:
     """Runs whose stated molality is not that of their masses, beyond 0.5 % and its u; the masses are used.
 
-    The molality of the masses is over all water: solvent, water of the lot, water of hydration.
+    The molality of the masses is over all water: solvent, water of the lot, water of hydration; and of all salt, that
+    which the solvent held before the run included: m₂ = (m₁W₀ + a)/W.
     """
-    stated, mass, water = (runs.quantities[name] for name in ("molality", "mass", "water"))
+    stated, mass, water, initial = (runs.quantities[name] for name in ("molality", "mass", "water", "initial_molality"))
     both = np.flatnonzero(~np.isnan(stated.value) & ~np.isnan(mass.value) & ~np.isnan(water.value) & (salt >= 0))
     if not both.size:
         return ()
     molar_mass = np.array([one.molar_mass for one in salts])[salt[both]]
     hydration = np.array([one.water for one in salts])[salt[both]]
     lot_water, fraction = _lot(samples, sample[both])
-    amount = mass.value[both] * fraction / molar_mass
-    kilograms = (water.value[both] + mass.value[both] * lot_water + amount * hydration * WATER_MOLAR_MASS) / 1000
-    weighed = amount / kilograms
-    spread = np.hypot(
-        np.nan_to_num(stated.u[both]),
-        weighed * np.hypot(
-            np.nan_to_num(mass.u[both]) / mass.value[both], np.nan_to_num(water.u[both]) / water.value[both]
-        ),
-    )  # fmt: skip
+    amount = mass.value[both] * fraction / molar_mass  # mol
+    before = np.nan_to_num(initial.value[both])  # mol/kg
+    solvent = water.value[both] / 1000  # kg
+    brought = (mass.value[both] * lot_water + amount * hydration * WATER_MOLAR_MASS) / 1000  # kg
+    kilograms = solvent + brought
+    weighed = (before * solvent + amount) / kilograms
+    parts = (
+        stated.u[both],
+        (amount - weighed * brought) / kilograms * (mass.u[both] / mass.value[both]),
+        (before - weighed) / kilograms * (water.u[both] / 1000),
+        solvent / kilograms * initial.u[both],
+    )
+    spread = np.sqrt(sum(np.nan_to_num(part) ** 2 for part in parts))
     difference = np.abs(stated.value[both] - weighed)
     odd = np.flatnonzero((difference > CONTRADICTION * weighed) & (difference > spread))
     name = runs.keys["run"]
     remarks = [
         Remark(
             f"run {name.labels[name.code[both[place]]]} ({runs.name}, row {runs.row[both[place]]}): its molality "
-            f"{number(stated.value[both[place]])} mol/kg is not the {weighed[place]:.4g} mol/kg of its masses; "
-            "the masses are used",
+            f"{number(stated.value[both[place]])} mol/kg is not the {weighed[place]:.4g} mol/kg of its masses"
+            f"{' and its initial molality' if before[place] > 0 else ''}; the masses are used",
             f"run {name.labels[name.code[both[place]]]}",
         )
         for place in odd[: TOLD_SINGLY if odd.size > 50 else odd.size].tolist()

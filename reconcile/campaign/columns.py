@@ -61,10 +61,10 @@ def _mass(table: str, name: str, meaning: str, *, served: bool = True) -> Column
     return Column(table, name, meaning, "quantity", "g", "a mass", usual, (1e-6, 1e3), above=0.0, served=served)
 
 
-def _molality(name: str, meaning: str, *, served: bool = True) -> Column:
+def _molality(name: str, meaning: str, *, above: float = -INF, lowest: float = -INF) -> Column:
     usual = ("mol/kg", "mmol/kg", "mmol/g", "mol/g")
     return Column(
-        "runs", name, meaning, "quantity", "mol/kg", "a molality", usual, (1e-6, 1e3), above=0.0, served=served
+        "runs", name, meaning, "quantity", "mol/kg", "a molality", usual, (1e-6, 1e3), above=above, lowest=lowest
     )
 
 
@@ -100,21 +100,21 @@ COLUMNS: tuple[Column, ...] = (
     Column("runs", "date", "day of the run, 2026-05-31"),
     _mass("runs", "mass", "salt as weighed"),
     Column(
-        "runs", "water", "solvent before the salt, as a mass or a volume", "quantity", "g", "a mass or a volume",
-        ("g", "mL", "kg", "L", "mg", "µL"), (1e-6, 1e3), volume=True, above=0.0,
+        "runs", "water", "solvent before the salt, as a mass or a volume; without the salt already in it",
+        "quantity", "g", "a mass or a volume", ("g", "mL", "kg", "L", "mg", "µL"), (1e-6, 1e3), volume=True, above=0.0,
     ),
     Column(
         "runs", "amount_concentration", "of the solution, instead of its molality", "quantity", "mol/L",
         "an amount concentration", ("mol/L", "mmol/L"), (1e-6, 1e3), above=0.0, served=False,
     ),
-    _molality("molality", "salt per kilogram of all water after the run"),
-    _molality("initial_molality", "salt already in the solvent", served=False),
-    _molality("final_molality", "of a dilution", served=False),
+    _molality("molality", "all salt per kilogram of all water after the run", above=0.0),
+    _molality("initial_molality", "salt already in the solvent; 0 where none is given", lowest=0.0),
+    _molality("final_molality", "where a dilution ends", above=0.0),
     _time("runs", "mixing_time", "moment of mixing in the trace"),
     _temperature("runs", "temperature", "at the start of the run; the reference temperature where none is given"),
     Column(
-        "runs", "enthalpy", "molar enthalpy of solution, reduced elsewhere; needs the molality", "quantity", "kJ/mol",
-        "a molar enthalpy", ("kJ/mol", "J/mol", "kcal/mol", "cal/mol"), (1e-3, 5.0),
+        "runs", "enthalpy", "molar enthalpy of solution, reduced elsewhere; needs the molality; or of dilution",
+        "quantity", "kJ/mol", "a molar enthalpy", ("kJ/mol", "J/mol", "kcal/mol", "cal/mol"), (1e-3, 5.0),
     ),
     _heat("runs", "heat", "absorbed by the dissolution: positive when the solution cools"),
     _temperature_change("runs", "corrected for heat exchange; negative when the solution cools"),
@@ -124,7 +124,10 @@ COLUMNS: tuple[Column, ...] = (
         "a specific heat capacity", ("J/(g K)", "J/(kg K)", "kJ/(kg K)", "cal/(g K)"), (1e-3, 5.0), above=0.0,
         served=False,
     ),
-    Column("runs", "role", "sample", words=("sample",), later_words=("dilution", "standard")),
+    Column(
+        "runs", "role", "sample or dilution; sample where none is given", words=("sample", "dilution"),
+        later_words=("standard",),
+    ),
     Column("runs", "reaction", "of a certified reaction that is no salt in water", served=False),
     Column("runs", "medium", "solvent of such a reaction", served=False),
     _temperature("runs", "salt_temperature", "where the salt was not as warm as the solvent", served=False),

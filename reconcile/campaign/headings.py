@@ -156,7 +156,7 @@ def _served_instead(name: str) -> set[str]:
     """What a row is not to be blamed for missing while a heading that would have replaced it is refused."""
     return {
         "temperature_change": {"heat", "enthalpy"}, "trace": {"heat", "enthalpy"}, "amount_concentration": {"molality"},
-        "final_molality": {"molality"}, "reaction": {"salt"},
+        "reaction": {"salt"},
     }.get(name, set())  # fmt: skip
 
 
@@ -197,7 +197,9 @@ def nearest_heading(text: str, table: str) -> tuple[str, str] | None:
     function = match[1] if match and match[1] in FUNCTIONS and len(match[2]) > 2 else ""
     body = match[2] if match and function else text
     bare = re.sub(r"[/(\[,;].*", "", body, flags=re.DOTALL).strip().casefold()
-    words = [bare.replace(" ", "_").replace("-", "_"), *re.findall(r"[^\W_]+", bare)]
+    whole = bare.replace(" ", "_").replace("-", "_")
+    parts = get_close_matches(whole, served, n=1, cutoff=0.85) or re.findall(r"[^\W_]+", bare)  # a slip is no part
+    words = [whole, *parts]
     for word in words:
         if word in served or word in OTHER_NAMES:
             name = word if word in served else OTHER_NAMES[word]

@@ -232,4 +232,6 @@ def _allowed(column: Column, heading: str) -> tuple[str, str]:
         else:
             remedy = f"Write `{column.name} / %` in the heading if these are percentages." if "%" not in heading else ""
         return expected, remedy or "Correct the value."
+    if column.lowest > -math.inf:
+        return f"{number(column.lowest)}{unit} or more", "Correct the value, or leave out the row."
     return f"more than {number(column.above)}{unit}", "Correct the value, or leave out the row."

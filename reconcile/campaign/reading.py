@@ -12,6 +12,7 @@ import numpy as np
 from reconcile.campaign.checks import check_purity, check_required, check_runs, check_words, contradictions
 from reconcile.campaign.columns import TABLES, keys_of, quantities_of
 from reconcile.campaign.delimited import read_delimited
+from reconcile.campaign.dilutions import remarks_of_solutions
 from reconcile.campaign.folder import SETTINGS, files_of, one_path
 from reconcile.campaign.headings import read_headings
 from reconcile.campaign.links import (
@@ -135,6 +136,7 @@ class _Assembly:
             formation_set=self.settings.formation_set,
             remarks=(
                 *remarks_of_tables(runs, self.built, self.files, self.settings, salts, self.place),
+                *remarks_of_solutions(runs.table, salts, salt),
                 *contradictions(runs.table, samples, sample, salts, salt),
                 *remarks_of_own_values(self.settings.references, salts, self.settings.formation_set),
             ),

@@ -137,9 +137,9 @@ def _salts(analysis: Analysis) -> pd.DataFrame:
     between = np.full(len(at), np.nan)
     for component, size in zip(limits.problem.components, limits.sizes, strict=True):
         if component.group is not None:
-            scale = np.bincount(limits.problem.salt, component.scale, minlength=len(at)) / np.bincount(
-                limits.problem.salt, minlength=len(at)
-            )
+            own = limits.problem.salt >= 0
+            total = np.bincount(limits.problem.salt[own], component.scale[own], minlength=len(at))
+            scale = total / np.bincount(limits.problem.salt[own], minlength=len(at))
             between = size * scale
     by_salt = dict(zip(analysis.comparison["salt"], analysis.comparison["verdict"], strict=True))
     formulas = [s.formula for s in campaign.salts]

@@ -35,7 +35,8 @@ def assumptions_table(campaign: Campaign, runs: ReducedRuns, dilution: Dilution,
         else:
             unit = "J" if component.unit == "J" else "times what was stated"
             text = f"{component.name}: estimated as {size:.3g} {unit}"
-        rows.append((text, _some(formulas[np.unique(limits.problem.salt[component.scale > 0])]), cost(component.line)))
+        of_crystal = limits.problem.salt[component.scale > 0]
+        rows.append((text, _some(formulas[np.unique(of_crystal[of_crystal >= 0])]), cost(component.line)))
     block = limits.problem.block_of_crystal
     by_population = ~limits.problem.prior.published[block]
     if by_population.any():

@@ -82,7 +82,10 @@ def log_likelihood(problem: Problem, sizes: Floats) -> float:
     if not (variance > 0).all():
         return -np.inf
     precision = problem.prior.precision
-    fit = problem.fit(sizes, precision, with_nuisance=True)
+    try:
+        fit = problem.fit(sizes, precision, with_nuisance=True)
+    except np.linalg.LinAlgError:  # so little variance beside the prior's that the runs seem exact
+        return -np.inf
     return fit.log_restricted_likelihood + weigh(problem, fit, precision).evidence
 
 

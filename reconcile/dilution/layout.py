@@ -12,9 +12,10 @@ from reconcile.calorimetry import ReducedRuns
 from reconcile.campaign import Campaign
 from reconcile.chemistry import water
 from reconcile.dilution.electrolytes import Electrolytes, electrolytes, why_no_limit
-from reconcile.dilution.further_terms import LINES, further_terms, terms_needed
+from reconcile.dilution.further_terms import LINES, terms_needed
+from reconcile.dilution.observing import basis_of, observed_part
 from reconcile.dilution.priors import PublishedSets, prior_of
-from reconcile.dilution.problem import Problem, observed_part
+from reconcile.dilution.problem import Problem
 from reconcile.dilution.scatter import components_of
 from reconcile.dilution.temperature import U_CURVATURE, HeatCapacityChange
 from reconcile.statistics import Collector, Ledger
@@ -52,41 +53,45 @@ def lay_out(campaign: Campaign, runs: ReducedRuns, sets: PublishedSets, heat_cap
     Raises
     ------
     NothingToFit
-        If no run is left.
+        If no dissolution is left.
     """
     what = electrolytes(campaign.salts)
     no_limit = {i: text for i, salt in enumerate(campaign.salts) if (text := why_no_limit(salt))}
     included, reason = _included(campaign, runs, no_limit)
-    for i in set(range(len(campaign.salts))) - set(campaign.salt[included].tolist()) - set(no_limit):
-        no_limit[i] = "none of its runs is included"
+    dissolved = set(campaign.salt[included & runs.dissolves].tolist())
+    diluted = set(campaign.salt[included].tolist()) - dissolved
+    for i in set(range(len(campaign.salts))) - dissolved - set(no_limit):
+        no_limit[i] = "only heats of dilution are included" if i in diluted else "none of its runs is included"
     row = np.flatnonzero(included)
-    if not row.size:
-        why = "; ".join(sorted({str(r) for r in reason if r}))
-        raise NothingToFit(f"No run is left to fit: {why}. Expected at least one. Take a run back in.")
-    crystal, salt = np.unique(campaign.salt[row], return_inverse=True)
-    used, block_of_crystal = np.unique(what.of_salt[crystal], return_inverse=True)
+    if not dissolved:
+        why = "; ".join(sorted({str(r) for r in reason if r})) or "there are only heats of dilution"
+        raise NothingToFit(f"No dissolution is left to fit: {why}. Expected at least one. Take a run back in.")
+    crystal = np.unique(campaign.salt[included & runs.dissolves])
+    salt = np.where(runs.dissolves[row], np.searchsorted(crystal, campaign.salt[row]), -1)
+    block_of_salt = what.of_salt[campaign.salt]
+    used = np.unique(block_of_salt[row])
+    block_of_crystal = np.searchsorted(used, what.of_salt[crystal])
     here = Electrolytes(
         tuple(what.name[i] for i in used.tolist()), block_of_crystal, tuple(what.charge_type[i] for i in used.tolist()),
         what.composition.of(used),
     )  # fmt: skip
-    allowed = np.ones(len(used), bool)
-    np.logical_and.at(allowed, block_of_crystal, campaign.published_dilution[crystal])
-    prior = prior_of(here, sets, allowed)
     position = np.zeros(len(what.name), dtype=np.int64)
     position[used] = np.arange(len(used))
-    block_of_run = position[what.of_salt[campaign.salt]]
+    block_of_run = position[block_of_salt]
+    allowed = np.ones(len(used), bool)
+    np.logical_and.at(allowed, block_of_run[row], campaign.published_dilution[campaign.salt[row]])
+    prior = prior_of(here, sets, allowed)
 
-    observed, basis = observed_part(
-        runs.enthalpy, runs.molality, runs.temperature, runs.u_temperature, here, block_of_run, prior.mean,
-        water.debye_hueckel_slope(runs.temperature), water.slope_relative_u(runs.temperature),
-        heat_capacity.value[campaign.salt], campaign.reference_temperature,
+    observed = observed_part(
+        runs, here, block_of_run, prior.mean, water.debye_hueckel_slope(runs.temperature),
+        water.slope_relative_u(runs.temperature), heat_capacity.value[campaign.salt], campaign.reference_temperature,
     )  # fmt: skip
     factor = here.composition.charge_factor[block_of_run]
     observed = _to_reference_temperature(observed, campaign, runs, factor, heat_capacity)
-    needed = terms_needed(runs.temperature[row], runs.molality.value[row], here, block_of_run[row])
+    highest = np.maximum(runs.molality.value, runs.initial_molality)
+    needed = terms_needed(runs.temperature[row], highest[row], here, block_of_run[row])
     terms: Booleans = np.asarray(needed.any(axis=0))
-    if terms.any():
-        basis = np.hstack([basis, further_terms(runs.molality.value, runs.temperature, factor)[:, terms]])
+    basis = basis_of(runs, here, block_of_run, terms)
     fitted = observed if included.all() else observed.take(row)
     components = components_of(
         runs.enthalpy.value[row], runs.amount[row], np.sqrt(fitted.private_variance), runs.unstated[row], salt,
@@ -131,7 +136,7 @@ def _to_reference_temperature(
     """Add the sources of the way to the reference temperature at infinite dilution."""
     collected = Collector(len(observed))
     away = runs.temperature - campaign.reference_temperature
-    away = np.where(np.abs(away) > 1e-9, away, 0.0)
+    away = np.where((np.abs(away) > 1e-9) & runs.dissolves, away, 0.0)
     names = [s.formula for s in campaign.salts]
     if away.any():
         salt = np.where(away != 0, campaign.salt, -1)

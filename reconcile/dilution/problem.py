@@ -9,9 +9,7 @@ import numpy as np
 from numpy.typing import NDArray
 from scipy import sparse
 
-from reconcile.dilution.electrolytes import Electrolytes
 from reconcile.dilution.further_terms import AWAY_LINE, STRONG_LINE
-from reconcile.dilution.models import empirical_terms, limiting_law
 from reconcile.dilution.priors import Prior
 from reconcile.dilution.scatter import Component
 from reconcile.statistics import Blocks, Ledger, LinearFit, Sources, least_squares, sources_of_one_line
@@ -27,7 +25,7 @@ class Problem:
     """y = ΔsolH° + basis·(parameters − prior mean) + sources, one row a run; the prior joins as further rows."""
 
     observed: Ledger  # (n,) enthalpy less limiting law, heat-capacity term and terms at the prior mean
-    salt: Integers  # (n,) crystal of each row
+    salt: Integers  # (n,) crystal of each row, −1: a heat of dilution
     block: Integers  # (n,) electrolyte of each row
     crystals: int
     block_of_crystal: Integers
@@ -72,7 +70,7 @@ class Problem:
         )
         return Problem(
             self.observed.take(rows),
-            new_crystal[self.salt[rows]],
+            np.where(self.salt[rows] >= 0, new_crystal[self.salt[rows]], -1),
             new_block[self.block[rows]],
             int(kept_crystal.sum()),
             new_block[self.block_of_crystal[kept_crystal]],
@@ -102,7 +100,8 @@ class Problem:
         )
         design = sparse.csr_array(sparse.vstack([self._run_design, prior_design], format="csr"))
         observations = self._with_prior(runs, root, rows, block, column)
-        blocks = Blocks(np.concatenate([self.block, block]), self._block_of_unknown)
+        means = len(observations.sources) - len(runs.sources)  # of the populations: held, as `weigh` takes them
+        blocks = Blocks(np.concatenate([self.block, block]), self._block_of_unknown, means)
         return least_squares(observations, design, blocks)
 
     @cached_property
@@ -129,9 +128,10 @@ class Problem:
         n = len(self.salt)
         to = self.solution_column[self.block]
         exists = to >= 0
-        rows = np.concatenate([np.arange(n), np.repeat(np.arange(n), exists.sum(axis=1))])
-        columns = np.concatenate([self.salt, to[exists]])
-        values = np.concatenate([np.ones(n), self.basis[exists]])
+        dissolving = np.flatnonzero(self.salt >= 0)
+        rows = np.concatenate([dissolving, np.repeat(np.arange(n), exists.sum(axis=1))])
+        columns = np.concatenate([self.salt[dissolving], to[exists]])
+        values = np.concatenate([np.ones(len(dissolving)), self.basis[exists]])
         return sparse.csr_array((values, (rows, columns)), shape=(n, self.unknowns))
 
     def _runs(self, sizes: Floats, with_nuisance: bool) -> Ledger:
@@ -183,57 +183,3 @@ class Problem:
                 found = np.array([value[place[f"mean of the {kind} population, direction {k + 1}"]] for k in range(3)])
                 out[mine] = self.prior.group_root[g] @ found
         return out
-
-
-def observed_part(
-    enthalpy: Ledger,
-    molality: Ledger,
-    temperature: Floats,
-    u_temperature: Floats,
-    what: Electrolytes,
-    block: Integers,
-    mean: Floats,
-    slope: Floats,
-    relative_u_slope: Floats,
-    heat_capacity_change: Floats,
-    reference_temperature: float,
-) -> tuple[Ledger, Floats]:
-    """Runs less what is known of their dilution and temperature, and the empirical terms.
-
-    Parameters
-    ----------
-    enthalpy, molality : Ledger (n,)
-        kJ/mol and mol/kg, of the same runs with the same errors.
-    temperature, u_temperature : array (n,), K
-    what : Electrolytes
-    block : int array (n,)
-    mean : array (B, 4)
-        Prior mean of the scaled parameters.
-    slope, relative_u_slope : array (n,)
-        A_H at the run's temperature, kJ kg^½ mol^−3/2, and its relative standard uncertainty, one source for all.
-    heat_capacity_change : array (n,)
-        ΔsolC_p° of the run's salt, J/(K mol).
-    reference_temperature : float, K
-
-    Returns
-    -------
-    Ledger (n,) and basis (n, 4)
-    """
-    one = what.composition.of(block)
-    m, away = molality.value, temperature - reference_temperature
-
-    def relative(at: Floats) -> Floats:
-        terms = np.einsum("nj,nj->n", empirical_terms(at, temperature, one), mean[block])
-        return np.asarray(limiting_law(at, one.charge_factor, slope) + terms)
-
-    step = 1e-4 * m
-    derivative = (relative(m + step) - relative(m - step)) / (2 * step)
-    first = limiting_law(m, one.charge_factor, slope)
-    value = enthalpy.value - relative(m) - heat_capacity_change * away / 1000
-    private = enthalpy.private - derivative[:, None] * molality.private
-    loading = enthalpy.loading - sparse.diags_array(derivative) @ molality.loading
-    ledger = Ledger(value, private, enthalpy.lines, sparse.csr_array(loading), enthalpy.sources)
-    ledger = ledger.with_private((heat_capacity_change / 1000 * u_temperature)[:, None], ["temperature of the run"])
-    by_slope = sparse.csr_array((relative_u_slope * first)[:, None])
-    ledger = ledger.with_sources(by_slope, sources_of_one_line(["Debye–Hückel slope"], "Debye–Hückel slope"))
-    return ledger, empirical_terms(m, temperature, one)

@@ -74,7 +74,7 @@ def dilute(campaign: Campaign, runs: ReducedRuns, sets: PublishedSets, heat_capa
 def corrected_runs(campaign: Campaign, runs: ReducedRuns, dilution: Dilution) -> Corrected:
     """The runs, one by one, at infinite dilution and the reference temperature."""
     at, found = dilution.layout, dilution.extrapolation
-    limit = np.isin(campaign.salt, at.crystal)
+    limit = np.isin(campaign.salt, at.crystal) & runs.dissolves
     standard = at.observed.value - np.einsum("nj,nj->n", at.basis, found.moved[at.block_of_run])
     variance = at.observed.private_variance + at.observed.shared_variance
     variance += np.einsum("ni,nij,nj->n", at.basis, found.solution_covariance[at.block_of_run], at.basis)

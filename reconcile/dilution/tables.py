@@ -128,7 +128,7 @@ def curves_table(campaign: Campaign, runs: ReducedRuns, dilution: Dilution) -> p
     pieces = []
     salt_of_row = campaign.salt[dilution.layout.row]
     for position, salt in enumerate(dilution.layout.crystal.tolist()):
-        rows = dilution.layout.row[salt_of_row == salt]
+        rows = dilution.layout.row[(salt_of_row == salt) & (dilution.extrapolation.problem.salt >= 0)]
         m, enthalpy = runs.molality.value[rows], runs.enthalpy.value[rows]
         at = np.linspace(0, 1.04 * np.sqrt(m.max()), POINTS) ** 2
         value, u, law = model_values(dilution, np.full(POINTS, position), at, campaign.reference_temperature)
@@ -155,10 +155,11 @@ def curves_table(campaign: Campaign, runs: ReducedRuns, dilution: Dilution) -> p
 def smoothed_of(campaign: Campaign, runs: ReducedRuns, dilution: Dilution) -> list[list[dict[str, float]]]:
     """ΔsolH at round molalities within each salt's range, and at infinite dilution."""
     crystals = len(dilution.layout.crystal)
-    salt = dilution.extrapolation.problem.salt
+    dissolving = dilution.extrapolation.problem.salt >= 0
+    salt, m = dilution.extrapolation.problem.salt[dissolving], runs.molality.value[dilution.layout.row][dissolving]
     low, high = np.full(crystals, np.inf), np.zeros(crystals)
-    np.minimum.at(low, salt, runs.molality.value[dilution.layout.row])
-    np.maximum.at(high, salt, runs.molality.value[dilution.layout.row])
+    np.minimum.at(low, salt, m)
+    np.maximum.at(high, salt, m)
     within = (0.9 * low[:, None] <= ROUND) & (1.1 * high[:, None] >= ROUND)
     position, column = np.nonzero(within | (ROUND == 0))
     at = ROUND[column]

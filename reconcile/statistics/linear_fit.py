@@ -25,6 +25,7 @@ class Blocks:
 
     of_row: Integers  # (n,)
     of_unknown: Integers  # (p,)
+    border: int = 0  # so many of the last sources count as wide, even where they touch one block only
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -325,5 +326,6 @@ def _narrow_and_wide(observations: Ledger, blocks: Blocks | None) -> tuple[Integ
         narrow = np.zeros(len(touched), bool)
         if edge.size:
             narrow[touched > 0] = np.minimum.reduceat(owner, edge) == np.maximum.reduceat(owner, edge)
+        narrow[len(touched) - blocks.border :] = False
     narrow &= touched > 0
     return np.flatnonzero(narrow), np.flatnonzero(~narrow & (touched > 0))

@@ -13,7 +13,8 @@ def said(results):
 def test_six_sentences_with_numbers(invented):
     amount, consistent, suspect, consequence, agree, assumed = said(invented)
     # 14.60 without, 14.91(30) as measured in the hand-built table
-    assert "1 salt would move by more than its standard uncertainty, most of all CaCl2·6H2O, by −0.31 kJ/mol" in consequence
+    assert "1 salt would move by more than its standard uncertainty" in consequence
+    assert "most of all CaCl2·6H2O, by −0.31 kJ/mol" in consequence
     assert amount.startswith("7 of 8 runs of 3 salts give 2 standard enthalpies of solution at 298.15 K")
     assert "from 0.025 to 0.30 kJ/mol" in amount
     assert "No limit is given for Na2CO3" in amount
