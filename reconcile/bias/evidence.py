@@ -42,17 +42,19 @@ def evidence(
     on_references : sparse (observations of the adjustment, h)
         Loadings on reference values; what the runs' fit passes on to the salts is added here.
     """
-    inside = dilution.extrapolation.fit.respond(on_runs)
-    salts = dilution.extrapolation.problem.crystals
-    onward = sparse.csr_array(adjustment.pad(inside.shift[:salts]) + on_references)
-    outside = adjustment.fit.respond(onward)
-    information = inside.information + outside.information
+    touching = np.flatnonzero(np.diff(sparse.csc_array(on_runs).indptr))  # a wrong reference touches no run
+    inside = dilution.extrapolation.fit.respond(sparse.csr_array(on_runs[:, touching]))
+    salts, count = dilution.extrapolation.problem.crystals, on_runs.shape[1]
+    shift, score, own = np.zeros((salts, count)), np.zeros(count), np.zeros((count, count))
+    shift[:, touching], score[touching] = inside.shift[:salts], inside.score
+    own[np.ix_(touching, touching)] = inside.information
+    outside = adjustment.fit.respond(sparse.csr_array(adjustment.pad(shift) + on_references))
+    information = own + outside.information
     whole = on_runs.power(2).T @ dilution.extrapolation.fit.weight + on_references.power(2).T @ adjustment.fit.weight
     diagonal = np.diag(information)
     testable = diagonal > LEAST * whole
-    within = np.where(testable, np.diag(inside.information) / np.where(testable, diagonal, 1.0), 0.0)
-    shift = inside.shift[:salts]
-    return Evidence(inside.score + outside.score, information, np.clip(within, 0, 1), shift, testable)
+    within = np.where(testable, np.diag(own) / np.where(testable, diagonal, 1.0), 0.0)
+    return Evidence(score + outside.score, information, np.clip(within, 0, 1), shift, testable)
 
 
 def partial(found: Evidence, given: list[int]) -> tuple[Floats, Floats]:

@@ -26,9 +26,10 @@ LEVEL = 0.05  # of the adjusted p
 POWER = 0.8
 SAME = 0.99  # correlation above which two hypotheses are one direction
 ALIKE = 0.9  # and above which they are named as rivals
+APART = 0.05  # and below which they may be accepted in one step
 CANDIDATES = 12  # single runs looked at with the cycles as well
 MANY = 1e4  # degrees of freedom told as infinite
-MOST = 20  # explanations taken into the joint account
+MOST = 20  # steps of the joint account
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -80,22 +81,32 @@ def search_bias(campaign: Campaign, runs: ReducedRuns, dilution: Dilution, adjus
     columns, asked = _catalogue(campaign, runs, dilution)
     accepted: list[int] = []  # positions in the catalogue and among the references
     spoilt: list[int] = []  # rows of the runs' fit
+    stage = _stage(campaign, dilution, adjustment, columns, asked, accepted, spoilt)
     for _ in range(MOST):
-        stage = _stage(campaign, dilution, adjustment, columns, asked, accepted, spoilt)
-        fixed = len(stage.asked) - len(stage.runs)
-        free = np.ones(len(stage.asked), bool)
-        free[accepted] = False
-        free[fixed : fixed + len(spoilt)] = False
-        free &= ~_doubled(stage)
-        if not (free & (stage.p_adjusted < LEVEL)).any():
+        found = _next(stage, len(spoilt))
+        if not found:
             break
-        best = int(np.argmax(np.where(free & (stage.p_adjusted < LEVEL), np.abs(stage.z), -1)))
-        if best < fixed:
-            accepted.append(best)
-        else:
-            spoilt.append(int(stage.runs[best - fixed]))
+        fixed = len(stage.asked) - len(stage.runs)
+        accepted += [i for i in found if i < fixed]
+        spoilt += [int(stage.runs[i - fixed]) for i in found if i >= fixed]
+        stage = _stage(campaign, dilution, adjustment, columns, asked, accepted, spoilt)
     table = _table(stage, dilution.extrapolation.freedom, len(dilution.layout.row))
     return Suspicions(table, *without(stage.found, stage.given))
+
+
+def _next(stage: _Stage, spoilt: int) -> list[int]:
+    """The most significant hypothesis not yet accepted, and with it others that have next to nothing to do with it."""
+    fixed = len(stage.asked) - len(stage.runs)
+    free = ~_doubled(stage) & (stage.p_adjusted < LEVEL)
+    free[stage.given] = False
+    free[fixed : fixed + spoilt] = False
+    order = np.argsort(-np.where(free, np.abs(stage.z), 0.0), kind="stable")[: int(free.sum())]
+    likeness = np.abs(correlation(stage.found))
+    chosen: list[int] = []
+    for i in order.tolist():
+        if not chosen or likeness[i, chosen].max() < APART:
+            chosen.append(i)
+    return chosen
 
 
 def _catalogue(campaign: Campaign, runs: ReducedRuns, dilution: Dilution) -> tuple[sparse.csr_array, list[_Asked]]:

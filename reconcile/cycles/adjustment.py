@@ -62,7 +62,7 @@ def adjust(salts: tuple[str, ...], net: Network) -> Adjustment:
     detectable = np.where(seen, BAARDA / root, np.nan)
     redundancy = np.clip(fit.redundancy(), 0, 1)
     value = net.design @ fit.value
-    u = np.sqrt(np.maximum(fit.variance(net.design), 0))
+    u = np.sqrt(np.maximum(fit.fitted_variance(), 0))
     count = len(salts)
     measured, u_measured = net.observed.value, net.observed.u
     reconciled = pd.DataFrame(

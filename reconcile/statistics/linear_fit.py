@@ -48,6 +48,7 @@ class LinearFit:
         self.observations = observations
         self.blocks = blocks
         self.unknowns = design.shape[1]
+        self._design = design
         variance = observations.private_variance
         if not (variance > 0).all():
             worst = int(np.flatnonzero(~(variance > 0))[0])
@@ -150,23 +151,35 @@ class LinearFit:
 
     @cached_property
     def _single_observations(self) -> tuple[Floats, Floats]:
-        leverage = self._inner_leverage()
+        information = self.weight - self.weight**2 * self._leverage
+        return self.weight * self.residual, np.maximum(information, 0.0)
+
+    @cached_property
+    def _leverage(self) -> Floats:
+        """Diagonal of [X F] C [X F]ᵀ, (n,), with C the inverse of the whole system."""
+        leverage = self._inner_leverage.copy()
         if len(self.wide):
             root = linalg.solve_triangular(self._corner[0], np.eye(len(self.wide)), trans="T", lower=self._corner[1])
-            for start in range(0, len(leverage), CHUNK):
-                at = slice(start, start + CHUNK)
-                left = as_dense(self._outer[at]) - self.inner[at] @ self._border_solved
-                leverage[at] += ((left @ root.T) ** 2).sum(axis=1)
-        return self.weight * self.residual, np.maximum(self.weight - self.weight**2 * leverage, 0.0)
+            for at in self._chunks():
+                leverage[at] += ((self._beyond_inner(at) @ root.T) ** 2).sum(axis=1)
+        return leverage
 
+    def _chunks(self) -> list[slice]:
+        return [slice(start, start + CHUNK) for start in range(0, len(self.observations), CHUNK)]
+
+    def _beyond_inner(self, at: slice) -> Floats:
+        """Loadings on the wide sources less what the inner system takes of them, F − X A⁻¹B, of some rows."""
+        return np.asarray(as_dense(self._outer[at]) - self.inner[at] @ self._border_solved)
+
+    @cached_property
     def _inner_leverage(self) -> Floats:
         """x_rᵀA⁻¹x_r of every row; block by block where there are blocks."""
         rows = len(self.observations)
         leverage = np.zeros(rows)
         if self.blocks is None:
-            for start in range(0, rows, CHUNK):
-                some = as_dense(self.inner[start : start + CHUNK])
-                leverage[start : start + CHUNK] = np.einsum("rq,qr->r", some, self._factor.solve(some.T))
+            for at in self._chunks():
+                some = as_dense(self.inner[at])
+                leverage[at] = np.einsum("rq,qr->r", some, self._factor.solve(some.T))
             return leverage
         for chosen, solved in self.coloured(np.arange(self.inner.shape[1])):
             picked = np.zeros(self.inner.shape[1])
@@ -235,20 +248,32 @@ class LinearFit:
 
         The sum is the degrees of freedom.
         """
-        rows = len(self.observations)
-        own = np.zeros(rows)
-        for start in range(0, rows, CHUNK):
-            at = np.arange(start, min(start + CHUNK, rows))
-            unit = np.zeros((rows, len(at)))
-            unit[at, np.arange(len(at))] = 1.0
-            inner, outer = self._solve(self._project(unit))
-            taken = np.einsum("rq,qr->r", as_dense(self.inner[at]), inner)
-            taken += np.einsum("rk,kr->r", as_dense(self._outer[at]), outer)
-            source = np.zeros((len(self.observations.sources), len(at)))
-            source[self.narrow], source[self.wide] = inner[self.unknowns :], outer
-            through = np.einsum("rk,kr->r", self.observations.loading[at].toarray(), source)
-            own[at] = 1 - taken + through
-        return own
+        narrow_loading = sparse.csr_array(sparse.csc_array(self.observations.loading)[:, self.narrow])
+        unit = np.zeros((self.inner.shape[1], len(self.narrow)))
+        unit[self.unknowns + np.arange(len(self.narrow)), np.arange(len(self.narrow))] = 1.0
+        of_narrow = self._factor.solve(unit) if len(self.narrow) else unit
+        through = np.zeros(len(self.observations))  # e_iᵀ F Fᵀ P e_i over the weight: what the sources take of an error
+        for at in self._chunks():
+            outer = linalg.cho_solve(self._corner, self._beyond_inner(at).T) if len(self.wide) else np.zeros((0, 1))
+            if len(self.wide):
+                through[at] += np.einsum("rk,kr->r", as_dense(self._outer[at]), outer)
+            if len(self.narrow):
+                taken = self.inner[at] @ of_narrow
+                if len(self.wide):
+                    taken = taken - (self._border_solved[self.unknowns :] @ outer).T
+                through[at] += np.einsum("rk,rk->r", narrow_loading[at].toarray(), taken)
+        return 1 - self.weight * (self._leverage - through)
+
+    def fitted_variance(self) -> Floats:
+        """Variance of the observations' fitted values Xθ̂, all sources included, (n,)."""
+        if len(self.narrow):
+            return self.variance(self._design)
+        out = self._inner_leverage.copy()  # without narrow sources the inner system is the design's own
+        if len(self.wide):
+            for at in self._chunks():
+                half = self.inner[at] @ self._border_solved
+                out[at] += np.einsum("rk,kr->r", half, linalg.cho_solve(self._corner, half.T))
+        return out
 
     def wide_loadings(self, unknowns: Integers) -> tuple[Floats, Floats]:
         """How chosen estimates depend on the wide sources.

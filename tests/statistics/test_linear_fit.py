@@ -57,6 +57,8 @@ def test_equals_dense_gls(seed, with_blocks):
     _sign_c, log_c = np.linalg.slogdet(covariance)
     assert fit.log_restricted_likelihood == pytest.approx(-0.5 * (log_v - log_c + y.value @ p @ y.value), rel=1e-9)
 
+    fitted = x.toarray() @ covariance @ x.toarray().T
+    np.testing.assert_allclose(fit.fitted_variance(), np.diag(fitted), rtol=1e-9)
     np.testing.assert_allclose(fit.redundancy(), np.diag(v @ p), atol=1e-9)
     assert fit.redundancy().sum() == pytest.approx(fit.degrees_of_freedom)
 
@@ -74,6 +76,16 @@ def test_equals_dense_gls(seed, with_blocks):
     score, information = fit.single_observations()
     np.testing.assert_allclose(score, p @ y.value, atol=1e-9)
     np.testing.assert_allclose(information, np.diag(p), rtol=1e-8)
+
+
+def test_a_network_without_narrow_sources_equals_dense_gls():
+    y, x, _ = campaign(np.random.default_rng(8))
+    y = Ledger(y.value, y.private, y.lines, sparse.csr_array(y.loading[:, :3]), y.sources.take(range(3)))
+    fit = least_squares(y, x)
+    assert len(fit.narrow) == 0
+    _, covariance, p, v = dense_gls(y, x)
+    np.testing.assert_allclose(fit.redundancy(), np.diag(v @ p), atol=1e-9)
+    np.testing.assert_allclose(fit.fitted_variance(), np.diag(x.toarray() @ covariance @ x.toarray().T), rtol=1e-9)
 
 
 @pytest.mark.parametrize("seed", [4, 5])
