@@ -48,4 +48,7 @@ def analyse(campaign: Campaign) -> Analysis:
 
     # comparison: scores against published values
     scores = compare(formulas, limits.crystals.value, limits.crystals.u, limits.half_width, published, net.circular)
-    return Analysis(campaign, runs, dilution, adjusted, suspicions, scores, published, parameters, heat_capacities)
+    saturation = reference.solubility(formulas)["molality"].to_numpy(float)
+    return Analysis(
+        campaign, runs, dilution, adjusted, suspicions, scores, published, parameters, heat_capacities, saturation
+    )

@@ -15,6 +15,7 @@ from reconcile.campaign import Campaign
 from reconcile.comparison.told import assumptions_table, sources_table
 from reconcile.cycles import Adjustment
 from reconcile.dilution import Dilution
+from reconcile.dilution.diagnostics import Diagnostics, diagnose
 from reconcile.dilution.tables import (
     SharedCovariance,
     budget_table,
@@ -42,6 +43,7 @@ class Analysis:
     published: pd.DataFrame  # enthalpies of solution, a row a salt of the fit
     parameters_used: pd.DataFrame  # published dilution parameters, index electrolyte
     heat_capacities: pd.DataFrame  # ΔsolC_p°, a row a salt
+    saturation: np.ndarray[Any, np.dtype[np.float64]]  # mol/kg, of the salts of the fit; NaN where none is held
 
     def __repr__(self) -> str:
         """One line for a notebook or a terminal."""
@@ -54,9 +56,15 @@ class Analysis:
         return _salts(self)
 
     @cached_property
+    def diagnostics(self) -> Diagnostics:
+        """What to mind of each extrapolation; enters no value."""
+        return diagnose(self.campaign, self.reduced, self.dilution, self.saturation)
+
+    @cached_property
     def runs(self) -> pd.DataFrame:
         """One row a run."""
-        return runs_table(self.campaign, self.reduced, self.dilution)
+        table = runs_table(self.campaign, self.reduced, self.dilution)
+        return table.assign(**{"influence / (kJ/mol)": self.diagnostics.influence})
 
     @cached_property
     def covariance(self) -> SharedCovariance:
@@ -116,6 +124,7 @@ def _salts(analysis: Analysis) -> pd.DataFrame:
     at = dilution.layout.crystal
     block = limits.problem.block_of_crystal
     random, shared = random_and_shared(dilution)
+    diagnostics = analysis.diagnostics
 
     def spread(values: np.ndarray, empty: float = np.nan) -> np.ndarray:
         out = np.full(count, empty)
@@ -168,10 +177,15 @@ def _salts(analysis: Analysis) -> pd.DataFrame:
             "prior_conflict_p": spread(limits.prior_conflict_p[block]),
             "parameters": spread_objects(parameters_of(dilution), {}),
             "slope": dilution.slope,
-            "free_slope": np.nan,
-            "heat_capacity_change": dilution.heat_capacity.value,
+            "free_slope": spread(diagnostics.free_slope),
+            "u_free_slope": spread(diagnostics.u_free_slope),
+            "line_m": spread(diagnostics.line_m),
+            "line_root": spread(diagnostics.line_root),
+            "heat_capacity_change": spread(diagnostics.heat_capacity_change),
+            "u_heat_capacity_change": spread(diagnostics.u_heat_capacity_change),
             "between_batch_sd": spread(between),
             "verdict": verdict,
+            "remarks": spread_objects(list(diagnostics.flags), ()),
             "reason": [dilution.layout.no_limit.get(i, "") for i in range(count)],
             "smoothed": spread_objects(smoothed_of(campaign, analysis.reduced, dilution), []),
             "standard_enthalpy_without_suspects": spread(limits.crystals.value + analysis.suspicions.change),

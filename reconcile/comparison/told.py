@@ -72,7 +72,7 @@ def assumptions_table(campaign: Campaign, runs: ReducedRuns, dilution: Dilution,
                 True,
                 "corrected to the reference temperature with tabulated ΔsolCp°, its slope with temperature taken as 0",
             ),
-            (False, "no ΔsolCp° is held: a typical −130 ± 60 J/(K mol) per unit of ½Σνz² is used"),
+            (False, "no ΔsolCp° is held: typical values, −130 ± 60 J/(K mol) per unit of ½Σνz² and 35 ± 15 a water"),
         ):
             mine = [i for i in salts.tolist() if bool(dilution.heat_capacity.held[i]) is held]
             if mine:

@@ -15,6 +15,8 @@ Floats = NDArray[np.float64]
 
 TYPICAL = -130.0  # J/(K mol) per unit of ½Σνz²: near NaCl −134, KCl −166, CaCl2/3 −117 (reference_data)
 U_TYPICAL = 60.0
+OF_WATER = 35.0  # J/(K mol) for each water of hydration: 75 as liquid less about 40 in the crystal (our judgement)
+U_OF_WATER = 15.0
 U_CURVATURE = 2.0  # J/(K² mol) per unit of ½Σνz², of dΔsolC_p/dT (design, 5.2)
 
 
@@ -39,8 +41,9 @@ def heat_capacity_change(salts: Sequence[Salt], held: pd.DataFrame) -> HeatCapac
     factor = np.array([0.5 * sum(nu * z * z for (_, nu), z in zip(s.ions, s.charges, strict=True)) for s in salts])
     value, u = held["value"].to_numpy(float), held["u"].to_numpy(float)
     known = np.isfinite(value)
+    hydrate = np.array([s.water for s in salts])
     return HeatCapacityChange(
-        np.where(known, value, TYPICAL * factor),
-        np.where(known & np.isfinite(u), u, U_TYPICAL * factor),
+        np.where(known, value, TYPICAL * factor + OF_WATER * hydrate),
+        np.where(known & np.isfinite(u), u, np.hypot(U_TYPICAL * factor, U_OF_WATER * hydrate)),
         known,
     )

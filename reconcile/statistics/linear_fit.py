@@ -139,6 +139,30 @@ class LinearFit:
             information = (weighted.T @ loadings).toarray() - inner_right.T @ inner - outer_right.T @ outer
         return Response(score, information, inner[: self.unknowns])
 
+    def respond_by_block(self, loading: Floats) -> tuple[Floats, Floats]:
+        """Score and information of one hypothesis a block, (blocks,) each: what `respond` gives for the loading cut up.
+
+        Parameters
+        ----------
+        loading : array (n,)
+            Each block's own hypothesis, in the observations' unit per unit of its size.
+        """
+        assert self.blocks is not None
+        count = int(self.blocks.of_unknown.max()) + 1
+        weighted = loading * self.weight
+        solved = self._factor.solve(self.inner.T @ weighted)  # A is block-diagonal: the blocks do not mix
+        inside = weighted * (loading - self.inner @ solved)
+        score = np.zeros(count)
+        information = np.zeros(count)
+        np.add.at(score, self.blocks.of_row, weighted * self.residual)
+        np.add.at(information, self.blocks.of_row, inside)
+        if len(self.wide):
+            border = np.zeros((count, len(self.wide)))
+            for at in self._chunks():
+                np.add.at(border, self.blocks.of_row[at], self._beyond_inner(at) * weighted[at, None])
+            information -= np.einsum("bk,kb->b", border, linalg.cho_solve(self._corner, border.T))
+        return score, np.maximum(information, 0.0)
+
     def unexplained(self, loadings: sparse.csr_array) -> Floats:
         """P L, (n, h): weighted loadings less what unknowns and sources would take up of them; few columns only."""
         inner, outer = self._solve(self._project(loadings))
@@ -289,6 +313,19 @@ class LinearFit:
         if not len(self.wide):
             return half, half
         return linalg.cho_solve(self._corner, half.T).T, half @ self._adjusted_root()
+
+    def wide_share(self, unknown: Integers, rows: int) -> Floats:
+        """Part of (C [X F]ᵀ)_{u, r} that runs through the wide sources, for one unknown u of each row r."""
+        out = np.zeros(rows)
+        if len(self.wide):
+            for at in self._chunks():
+                if at.start < rows:
+                    outer = linalg.cho_solve(self._corner, self._beyond_inner(at).T).T
+                    some = slice(at.start, min(at.stop, rows))
+                    out[some] = np.einsum(
+                        "rk,rk->r", outer[: some.stop - some.start], self._border_solved[unknown[some]]
+                    )
+        return out
 
     def _adjusted_root(self) -> Floats:
         """(S⁻¹ − S⁻²)^½ as columns, those of no size left out."""

@@ -78,6 +78,17 @@ def test_equals_dense_gls(seed, with_blocks):
     np.testing.assert_allclose(information, np.diag(p), rtol=1e-8)
 
 
+def test_a_hypothesis_a_block_is_the_loading_cut_up():
+    y, x, blocks = campaign(np.random.default_rng(12))
+    fit = least_squares(y, x, blocks)
+    loading = np.random.default_rng(1).normal(size=len(y))
+    score, information = fit.respond_by_block(loading)
+    cut = np.where(blocks.of_row[:, None] == np.arange(5), loading[:, None], 0.0)
+    response = fit.respond(sparse.csr_array(cut), diagonal=True)
+    np.testing.assert_allclose(score, response.score, atol=1e-10)
+    np.testing.assert_allclose(information, response.information, rtol=1e-9)
+
+
 def test_a_network_without_narrow_sources_equals_dense_gls():
     y, x, _ = campaign(np.random.default_rng(8))
     y = Ledger(y.value, y.private, y.lines, sparse.csr_array(y.loading[:, :3]), y.sources.take(range(3)))
