@@ -79,13 +79,13 @@ def assumptions_table(campaign: Campaign, runs: ReducedRuns, dilution: Dilution,
                 names = np.array([campaign.salts[i].formula for i in mine], dtype=object)
                 rows.append((text, _some(names), cost("heat capacity of dissolution")))
     if "dilution away from 298.15 K" in lines:
-        text = "the dilution parameters' own change with temperature is unknown, 0 ± 0.06 kJ/(K mol) per unit of ½Σνz²"
+        text = "the dilution parameters' own change with temperature is unknown, 0 ± 0.04 kJ/(K mol) per unit of ½Σνz²"
         warm = contribution[:, lines.index("dilution away from 298.15 K")] > 0
         rows.append((text, _some(formulas[warm]), cost("dilution away from 298.15 K", warm)))
     if "equation at high ionic strength" in lines:
         text = (
             "where a solution reaches an ionic strength above 1 mol/kg the equation is taken to fail by "
-            "0.05·½Σνz²·(I^1.5, I^2.5/10) kJ/mol"
+            "0.1·½Σνz²·(I^1.5, I^2.5/10) kJ/mol"
         )
         high = contribution[:, lines.index("equation at high ionic strength")] > 0
         rows.append((text, _some(formulas[high]), cost("equation at high ionic strength", high)))
