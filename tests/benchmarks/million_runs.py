@@ -7,53 +7,18 @@ import platform
 import subprocess
 import sys
 import tempfile
-from itertools import product
 from pathlib import Path
 
 import numpy as np
 import pandas as pd
 
 from reconcile import reference
-from reconcile.chemistry import FormulaError, read_salt
-from reconcile.chemistry.ions import IONS
-from reconcile.simulation import Truth, enthalpy_rows
-
-
-def formulas(count):
-    """Formulae of distinct electrolytes out of the list of ions."""
-    ions = list(IONS.values()) if hasattr(IONS, "values") else list(IONS)
-    cations = [i for i in ions if i.charge > 0]
-    anions = [i for i in ions if i.charge < 0]
-    found, seen = [], set()
-    for cation, anion in product(cations, anions):
-        common = np.lcm(cation.charge, -anion.charge)
-        parts = []
-        for ion, count_of in ((cation, common // cation.charge), (anion, common // -anion.charge)):
-            bare = ion.name.rstrip("0123456789").rstrip("+-")
-            parts.append(bare if count_of == 1 else f"({bare}){count_of}")
-        try:
-            salt = read_salt("".join(parts))
-        except FormulaError:
-            continue
-        if salt.electrolyte not in seen and not {i for i, _ in salt.ions} & {
-            "CO3-2",
-            "S-2",
-            "PO4-3",
-            "CN-",
-            "Al+3",
-            "Fe+3",
-            "Cr+3",
-        }:
-            seen.add(salt.electrolyte)
-            found.append(salt.formula)
-        if len(found) == count:
-            break
-    return found
+from reconcile.simulation import Truth, enthalpy_rows, many_salts
 
 
 def campaign(folder, runs, salts, calorimeters=20):
     rng = np.random.default_rng(1)
-    names = formulas(salts)
+    names = list(many_salts(salts))
     parameters = rng.normal([-0.8, -3, 0.05, 0], [0.6, 1.5, 0.04, 0], size=(len(names), 4))
     published = reference.solution_enthalpies(names)["value"].to_numpy(float)
     standard = np.where(np.isfinite(published), published, rng.normal(size=len(names)) * 30)
