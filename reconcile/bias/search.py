@@ -27,6 +27,7 @@ POWER = 0.8
 SAME = 0.99  # correlation above which two hypotheses are one direction
 ALIKE = 0.9  # and above which they are named as rivals
 APART = 0.05  # and below which they may be accepted in one step
+OWN = 1e-3  # share of its information that a hypothesis must have to itself to be accepted beside others
 CANDIDATES = 12  # single runs looked at with the cycles as well
 MANY = 1e4  # degrees of freedom told as infinite
 MOST = 20  # steps of the joint account
@@ -104,9 +105,17 @@ def _next(stage: _Stage, spoilt: int) -> list[int]:
     likeness = np.abs(correlation(stage.found))
     chosen: list[int] = []
     for i in order.tolist():
-        if not chosen or likeness[i, chosen].max() < APART:
+        apart = not chosen or likeness[i, chosen].max() < APART
+        if apart and _own_direction(stage.found.information, i, stage.given + chosen):
             chosen.append(i)
     return chosen
+
+
+def _own_direction(information: Floats, i: int, given: list[int]) -> bool:
+    """Whether enough is left of a hypothesis beside others together: pair by pair they may look unlike and are not."""
+    cross = information[given, i]
+    left = information[i, i] - cross @ np.linalg.solve(information[np.ix_(given, given)], cross)
+    return bool(left > OWN * information[i, i])
 
 
 def _catalogue(campaign: Campaign, runs: ReducedRuns, dilution: Dilution) -> tuple[sparse.csr_array, list[_Asked]]:

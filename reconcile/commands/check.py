@@ -2,17 +2,19 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Callable, Iterator
 from pathlib import Path
 from typing import TYPE_CHECKING
 
 import click
 
 from reconcile.commands import options
+from reconcile.report.words import counted
 
 if TYPE_CHECKING:
     from reconcile.campaign import Campaign
     from reconcile.campaign.tables import Quantity, Table
+    from reconcile.chemistry import Salt
 
 
 @click.command("check")
@@ -24,6 +26,11 @@ def command(campaign: tuple[Path, ...]) -> None:
     checked = read_campaign(list(campaign) if len(campaign) > 1 else campaign[0])
     for line in described(checked):
         click.echo(line)
+    if len(_no_limit(checked)) == len(checked.salts):
+        raise click.ClickException(
+            "No salt will get a limit at infinite dilution: report has nothing to fit. Expected at least one "
+            "dissolution of a salt whose ions do not react with water."
+        )
 
 
 def described(campaign: Campaign) -> Iterator[str]:
@@ -49,7 +56,7 @@ def _table(table: Table) -> Iterator[str]:
     known = {column.name: column for column in COLUMNS if column.table == kind}
     if not known:  # a single table of any name is a table of runs
         known = {column.name: column for column in COLUMNS if column.table == "runs"}
-    yield f"{table.name}: {_counted(len(table), 'row')}"
+    yield f"{table.name}: {counted(len(table), 'row')}"
     for name, quantity in table.quantities.items():
         filled = int((quantity.value == quantity.value).sum())
         if filled:
@@ -80,26 +87,73 @@ def _plan(campaign: Campaign) -> Iterator[str]:
     """What will be done with how many runs, salt by salt."""
     import numpy as np
 
-    runs = campaign.runs
-    reduced = np.isfinite(runs.quantities["enthalpy"].value)
-    left_out = int((~campaign.included).sum())
+    from reconcile.report.kinds import counted_kinds, kinds
+
+    kind, kept = kinds(campaign), campaign.included
+    reduced = np.isfinite(campaign.runs.quantities["enthalpy"].value)
     yield "What will be done:"
-    for number, words in (
-        (int((~reduced & campaign.included).sum()), "from heat, mass and water to molar enthalpy and molality"),
-        (int((reduced & campaign.included).sum()), "taken as molar enthalpies at their molality"),
-        (left_out, "excluded by campaign.toml, kept in every table"),
+    for chosen, words in (
+        (kept & ~reduced, "from heat, mass and water to molar enthalpy and molality"),
+        (kept & reduced & ~kind.dilution, "taken as molar enthalpies of solution at their molality"),
+        (kept & kind.dilution, "taken as enthalpies of dilution, which have no standard enthalpy of solution"),
+        (~kept, "excluded by campaign.toml, kept in every table"),
     ):
-        if number:
-            yield f"  {_counted(number, 'run')}: {words}"
+        if number := int(chosen.sum()):
+            yield f"  {counted(number, 'run')}: {words}"
+    prior = _priors(campaign)
+    count = kind.count(kept, campaign.salt, len(campaign.salts))
+    without = _no_limit(campaign)
     for position, salt in enumerate(campaign.salts):
-        of_it = (campaign.salt == position) & campaign.included
+        runs = counted_kinds(count[position].tolist())
+        if position in without:
+            yield f"  {salt.formula}: {runs}; no limit at infinite dilution: {without[position]}"
+            continue
         most = campaign.max_molality[position]
         limit = f", up to {most:g} mol/kg" if np.isfinite(most) else ""
-        own = campaign.published_dilution[position]
-        prior = "published dilution parameters where held" if own else "the population of dilution parameters"
-        yield f"  {salt.formula}: {_counted(int(of_it.sum()), 'run')} to infinite dilution{limit}, prior: {prior}"
-    yield f"  all salts: one adjustment with the formation enthalpies {campaign.formation_set},"
-    yield "  tests of systematic effects, scores against published values"
+        yield f"  {salt.formula}: {runs} to infinite dilution{limit}, prior: {prior(salt)}"
+    if len(without) < len(campaign.salts):
+        yield f"  all salts with a limit: one adjustment with the formation enthalpies {campaign.formation_set},"
+        yield "  tests of systematic effects, scores against published values"
+
+
+def _priors(campaign: Campaign) -> Callable[[Salt], str]:
+    """Whence the dilution parameters of a salt's solution come before its runs."""
+    from reconcile import reference
+
+    published = frozenset(reference.dilution_parameters().index)
+    forbidden = {s.electrolyte for s, may in zip(campaign.salts, campaign.published_dilution, strict=True) if not may}
+
+    def prior(salt: Salt) -> str:
+        if salt.electrolyte in forbidden:
+            return "the population of dilution parameters, as campaign.toml asks"
+        if salt.electrolyte in published:
+            return "published dilution parameters"
+        return "the population of dilution parameters, none being held for it"
+
+    return prior
+
+
+def _no_limit(campaign: Campaign) -> dict[int, str]:
+    """Salts that will get no standard enthalpy: position ─► why."""
+    from reconcile.dilution.electrolytes import why_no_limit
+    from reconcile.report.kinds import kinds
+
+    count = kinds(campaign).count(campaign.included, campaign.salt, len(campaign.salts)).tolist()
+    dissolved = {
+        salt.electrolyte
+        for salt, (into_water, added, _) in zip(campaign.salts, count, strict=True)
+        if into_water + added
+    }
+    reasons: dict[int, str] = {}
+    for position, (salt, (into_water, added, diluted)) in enumerate(zip(campaign.salts, count, strict=True)):
+        if why := why_no_limit(salt):
+            reasons[position] = f"{why}. Its runs stay in the tables"
+        elif not into_water + added + diluted:
+            reasons[position] = "all its runs are excluded"
+        elif not into_water + added:
+            serve = "; they serve the other crystals of that solution" if salt.electrolyte in dissolved else ""
+            reasons[position] = f"no included run dissolves it, and a heat of dilution is one of the solution{serve}"
+    return reasons
 
 
 def _assumed(campaign: Campaign) -> Iterator[str]:
@@ -113,7 +167,3 @@ def _assumed(campaign: Campaign) -> Iterator[str]:
 
 def _filled(filled: int, rows: int) -> str:
     return "every row" if filled == rows else f"{filled} of {rows} rows"
-
-
-def _counted(number: int, noun: str) -> str:
-    return f"{number} {noun}{'' if number == 1 else 's'}"

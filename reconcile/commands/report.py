@@ -16,7 +16,7 @@ from reconcile.commands import options
 def command(campaign: tuple[Path, ...], out: Path | None, files: str | None) -> None:
     """Read CAMPAIGN, analyse it and write the report.
 
-    Several campaigns given together are one. Former files of the same names are replaced once all new ones are
+    Former files of the same names are replaced once all new ones are
     complete; others in the folder are left alone.
     """
     words = options.words(files)

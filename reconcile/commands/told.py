@@ -13,6 +13,6 @@ if TYPE_CHECKING:
 def summary(analysis: Results, written: Sequence[Path]) -> str:
     """The verdict, then the file to open."""
     from reconcile.report.verdict import verdict
+    from reconcile.report.words import counted
 
-    number = f"{len(written)} file{'' if len(written) == 1 else 's'} written"
-    return "\n".join([*verdict(analysis), f"{number}; open", str(written[-1])])
+    return "\n".join([*verdict(analysis), f"{counted(len(written), 'file')} written; open", str(written[-1])])

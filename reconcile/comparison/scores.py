@@ -45,9 +45,9 @@ def e_n_score(value: Floats, expanded_u: Floats, assigned: Floats, expanded_u_as
 
 
 def verdict_of_zeta(zeta: Floats) -> NDArray[np.str_]:
-    """Satisfactory up to 2, questionable up to 3, unsatisfactory beyond."""
+    """Satisfactory up to 2, questionable between 2 and 3, unsatisfactory from 3 on."""
     size = np.abs(zeta)
-    return np.select([size <= SATISFACTORY, size <= QUESTIONABLE], ["satisfactory", "questionable"], "unsatisfactory")
+    return np.select([size <= SATISFACTORY, size < QUESTIONABLE], ["satisfactory", "questionable"], "unsatisfactory")
 
 
 def compare(

@@ -78,11 +78,11 @@ def assumptions_table(campaign: Campaign, runs: ReducedRuns, dilution: Dilution,
             if mine:
                 names = np.array([campaign.salts[i].formula for i in mine], dtype=object)
                 rows.append((text, _some(names), cost("heat capacity of dissolution")))
-    if "dilution away from 298.15 K" in lines:
+    if cost("dilution away from 298.15 K") > 0:
         text = "the dilution parameters' own change with temperature is unknown, 0 ± 0.04 kJ/(K mol) per unit of ½Σνz²"
         warm = contribution[:, lines.index("dilution away from 298.15 K")] > 0
         rows.append((text, _some(formulas[warm]), cost("dilution away from 298.15 K", warm)))
-    if "equation at high ionic strength" in lines:
+    if cost("equation at high ionic strength") > 0:
         text = (
             "where a solution reaches an ionic strength above 1 mol/kg the equation is taken to fail by "
             "0.1·½Σνz²·(I^1.5, I^2.5/10) kJ/mol"

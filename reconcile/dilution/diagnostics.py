@@ -13,6 +13,7 @@ from reconcile.chemistry import water
 from reconcile.dilution.models import limiting_law
 from reconcile.dilution.observing import along
 from reconcile.dilution.season import Dilution
+from reconcile.dilution.tables import ONE_TEMPERATURE
 
 Floats = NDArray[np.float64]
 
@@ -47,7 +48,7 @@ def diagnose(campaign: Campaign, runs: ReducedRuns, dilution: Dilution, saturati
     """
     slope, u_slope = _free_slope(runs, dilution)
     block = dilution.extrapolation.problem.block_of_crystal
-    lines = _straight_lines(campaign, runs, dilution)
+    lines = _straight_lines(runs, dilution)
     change, u_change = _heat_capacity(campaign, dilution)
     influence = _influence(dilution, len(campaign.runs))
     flags = _flags(runs, dilution, saturation, influence)
@@ -67,16 +68,17 @@ def _free_slope(runs: ReducedRuns, dilution: Dilution) -> tuple[Floats, Floats]:
     return dilution.slope + size, np.where(able, 1 / np.sqrt(np.where(able, information, 1.0)), np.nan)
 
 
-def _straight_lines(campaign: Campaign, runs: ReducedRuns, dilution: Dilution) -> tuple[Floats, Floats]:
+def _straight_lines(runs: ReducedRuns, dilution: Dilution) -> tuple[Floats, Floats]:
     """Weighted straight lines through each crystal's dissolutions in water, in m and in √m, at m = 0."""
-    away = runs.temperature - campaign.reference_temperature
-    at_reference_temperature = runs.enthalpy.value - dilution.heat_capacity.value[campaign.salt] * away / 1000
     found, at = dilution.extrapolation, dilution.layout
     plain = (found.problem.salt >= 0) & (runs.initial_molality[at.row] == 0)
     code, rows = found.problem.salt[plain], at.row[plain]
     weight = found.fit.weight[: len(at.row)][plain]
-    y, m = at_reference_temperature[rows], runs.molality.value[rows]
+    y, m = runs.enthalpy.value[rows], runs.molality.value[rows]
     crystals = len(at.crystal)
+    low, high = np.full(crystals, np.inf), np.full(crystals, -np.inf)
+    np.minimum.at(low, code, runs.temperature[rows])
+    np.maximum.at(high, code, runs.temperature[rows])
 
     def total(values: Floats) -> Floats:
         return np.asarray(np.bincount(code, weight * values, minlength=crystals), dtype=np.float64)
@@ -85,7 +87,8 @@ def _straight_lines(campaign: Campaign, runs: ReducedRuns, dilution: Dilution) -
     for x in (m, np.sqrt(m)):
         w, wx, wxx, wy, wxy = total(np.ones_like(x)), total(x), total(x * x), total(y), total(x * y)
         determinant = w * wxx - wx**2
-        able = (np.bincount(code, minlength=crystals) > 2) & (determinant > 1e-9 * np.maximum(w * wxx, 1e-300))
+        able = (np.bincount(code, minlength=crystals) > 2) & (high - low < ONE_TEMPERATURE)
+        able &= determinant > 1e-9 * np.maximum(w * wxx, 1e-300)
         out.append(np.where(able, (wxx * wy - wx * wxy) / np.where(able, determinant, 1.0), np.nan))
     return out[0], out[1]
 

@@ -58,6 +58,9 @@ def lay_out(campaign: Campaign, runs: ReducedRuns, sets: PublishedSets, heat_cap
     what = electrolytes(campaign.salts)
     no_limit = {i: text for i, salt in enumerate(campaign.salts) if (text := why_no_limit(salt))}
     included, reason = _included(campaign, runs, no_limit)
+    for i in _without_scatter(campaign, runs, included):
+        no_limit[i] = "one run a salt and no uncertainty stated: nothing tells how far it may be wrong"
+    included, reason = _included(campaign, runs, no_limit)
     dissolved = set(campaign.salt[included & runs.dissolves].tolist())
     diluted = set(campaign.salt[included].tolist()) - dissolved
     for i in set(range(len(campaign.salts))) - dissolved - set(no_limit):
@@ -65,7 +68,9 @@ def lay_out(campaign: Campaign, runs: ReducedRuns, sets: PublishedSets, heat_cap
     row = np.flatnonzero(included)
     if not dissolved:
         why = "; ".join(sorted({str(r) for r in reason if r})) or "there are only heats of dilution"
-        raise NothingToFit(f"No dissolution is left to fit: {why}. Expected at least one. Take a run back in.")
+        raise NothingToFit(
+            f"No dissolution is left to fit: {why}. Expected at least one. Add one, or take one back in."
+        )
     crystal = np.unique(campaign.salt[included & runs.dissolves])
     salt = np.where(runs.dissolves[row], np.searchsorted(crystal, campaign.salt[row]), -1)
     block_of_salt = what.of_salt[campaign.salt]
@@ -120,13 +125,21 @@ def screened_for(campaign: Campaign, runs: ReducedRuns) -> sparse.csr_array:
     return sparse.csr_array(sparse.hstack(parts, format="csr"))
 
 
+def _without_scatter(campaign: Campaign, runs: ReducedRuns, included: Booleans) -> list[int]:
+    """Salts of runs without any stated uncertainty in a campaign where no two such runs can be compared."""
+    silent = campaign.salt[included & runs.unstated & runs.dissolves]
+    salts = np.unique(silent)
+    return salts.tolist() if len(silent) == len(salts) else []
+
+
 def _included(campaign: Campaign, runs: ReducedRuns, no_limit: dict[int, str]) -> tuple[Booleans, NDArray[np.object_]]:
     reason = np.array(campaign.reason, dtype=object)
     included = campaign.included.copy()
     above = included & (runs.molality.value > campaign.max_molality[campaign.salt])
     reason[above] = "above max_molality"
     unlimited = included & ~above & np.isin(campaign.salt, sorted(no_limit))
-    reason[unlimited] = "its salt has no limit at infinite dilution"
+    why = np.array([no_limit.get(i, "") for i in range(len(campaign.salts))], dtype=object)
+    reason[unlimited] = "no limit: " + why[campaign.salt[unlimited]]
     return included & ~above & ~unlimited, reason
 
 

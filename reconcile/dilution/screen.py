@@ -19,6 +19,8 @@ Integers = NDArray[np.int64]
 LEVEL = 0.01  # adjusted p below which something is taken into the model while components are estimated
 MOST = 12  # rounds
 WHOLLY = 0.95  # share of the information above which a statistic is taken to have the runs' own scale
+FEWEST = 4.0  # degrees of freedom behind the scatter: with fewer no run can be said to stand alone
+SHARP = 0.75  # of ν: with parts of redundancies z² < ν holds only roughly, and beyond this says no more
 WIDE = 1e3  # prior sd of what was found, in its own standard uncertainties: as good as free
 
 
@@ -66,7 +68,7 @@ def tail(statistic: Floats, freedom: float, within: Floats | float = 1.0) -> Flo
     mixed = np.maximum(freedom / np.maximum(share, 1e-3) ** 2 - 1, 1e-3)
     if freedom <= 1.5:
         return np.asarray(np.where(own, 1.0, 2 * stdtr(mixed, -z)))
-    t = z * np.sqrt((freedom - 1) / np.maximum(freedom - z**2, 1e-9))
+    t = z * np.sqrt((freedom - 1) / np.maximum(freedom - z**2, (1 - SHARP) * freedom))
     return np.asarray(np.where(own, 2 * stdtr(freedom - 1, -t), 2 * stdtr(mixed, -z)))
 
 
@@ -95,6 +97,8 @@ def screened(
     for _ in range(MOST):
         fit = problem.fit(sizes, precision, with_nuisance=True)
         freedom = scatter_freedom(problem, sizes, fit)
+        if freedom < FEWEST:
+            break
         score, information = (part[:n] for part in fit.single_observations())
         testable = information > 1e-3 * fit.weight[:n]
         z = np.where(testable, score / np.sqrt(np.where(testable, information, 1.0)), 0.0)

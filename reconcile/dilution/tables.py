@@ -15,6 +15,7 @@ from reconcile.dilution.season import Dilution, corrected_runs, model_values
 
 Floats = NDArray[np.float64]
 
+NOTHING = 1e-9  # of u: a line of rounding errors
 MOST_LINES = 12  # of a budget; the rest as "other"
 RANDOM_LINES = frozenset(
     (
@@ -23,6 +24,7 @@ RANDOM_LINES = frozenset(
     )
 )  # fmt: skip
 POINTS = 80  # of a curve
+ONE_TEMPERATURE = 0.5  # K: straight lines are drawn through runs at one temperature only
 ROUND = np.array([0.0, 0.001, 0.002, 0.005, 0.01, 0.02, 0.05, 0.1, 0.2, 0.5, 1.0, 2.0, 3.0, 4.0, 5.0, 6.0])  # mol/kg
 
 
@@ -67,7 +69,8 @@ def budget_table(campaign: Campaign, dilution: Dilution) -> pd.DataFrame:
             "contribution": ranked.ravel(),
         }
     )
-    return frame[frame["contribution"] > 0].reset_index(drop=True)
+    u = np.repeat(dilution.extrapolation.crystals.u, ranked.shape[1])
+    return frame[frame["contribution"] > NOTHING * u].reset_index(drop=True)
 
 
 def random_and_shared(dilution: Dilution) -> tuple[Floats, Floats]:
@@ -126,19 +129,22 @@ def runs_table(campaign: Campaign, runs: ReducedRuns, dilution: Dilution) -> pd.
 def curves_table(campaign: Campaign, runs: ReducedRuns, dilution: Dilution) -> pd.DataFrame:
     """Curves for the figures, 80 points a salt: model with u, limiting law, and the straight lines in m and in √m."""
     pieces = []
+    weight_of_run = np.ones(len(campaign.runs))
+    weight_of_run[dilution.layout.row] = dilution.extrapolation.fit.weight[: len(dilution.layout.row)]
     salt_of_row = campaign.salt[dilution.layout.row]
     for position, salt in enumerate(dilution.layout.crystal.tolist()):
         rows = dilution.layout.row[(salt_of_row == salt) & (dilution.extrapolation.problem.salt >= 0)]
-        m, enthalpy = runs.molality.value[rows], runs.enthalpy.value[rows]
+        m = runs.molality.value[rows]
+        plain = rows[runs.initial_molality[rows] == 0]
+        x, y = runs.molality.value[plain], runs.enthalpy.value[plain]
+        weight = weight_of_run[plain]
         at = np.linspace(0, 1.04 * np.sqrt(m.max()), POINTS) ** 2
         value, u, law = model_values(dilution, np.full(POINTS, position), at, campaign.reference_temperature)
-        # measured points as they are at the reference temperature: that part of the correction is not dilution
         lines = {}
         for name, shape in (("line_m", lambda x: x), ("line_root", np.sqrt)):
-            drawable = len(rows) > 2 and np.ptp(shape(m)) > 0
-            lines[name] = (
-                np.polyval(np.polyfit(shape(m), enthalpy, 1), shape(at)) if drawable else np.full(POINTS, np.nan)
-            )
+            drawable = len(x) > 2 and np.ptp(x) > 0 and np.ptp(runs.temperature[plain]) < ONE_TEMPERATURE
+            fitted = np.polyfit(shape(x), y, 1, w=np.sqrt(weight)) if drawable else np.full(2, np.nan)
+            lines[name] = np.polyval(fitted, shape(at))
         piece = {
             "salt": campaign.salts[salt].formula,
             "molality": at,

@@ -72,9 +72,11 @@ def span(low: float, high: float, u: float) -> str:
 
 
 def freedom(value: float) -> str:
-    """Degrees of freedom; beyond 9999 as good as infinite."""
+    """Degrees of freedom; beyond 9999 as good as infinite, and 1 stands for fewer as well."""
     if math.isnan(value):
         return NOTHING
+    if value <= 1:
+        return "at most 1"
     if value > 9999:
         return "∞"
     return f"{value:.0f}" if value >= 10 else f"{value:.1f}"

@@ -13,6 +13,7 @@ from matplotlib.figure import Figure
 from numpy.typing import NDArray
 
 from reconcile.report.figure_style import STYLE, WIDTH, printable
+from reconcile.report.kinds import kinds
 from reconcile.report.names import file_names
 from reconcile.report.palette import LIGHT
 from reconcile.report.results import Results, rows
@@ -20,6 +21,7 @@ from reconcile.report.scores_figure import scores
 
 SCORES = "scores"  # name of the figure of all scores
 MOST_POINTS = 600  # of one salt that a figure draws; evenly picked beyond
+MOST_FACTOR = 12.8  # times u: a wider interval leaves the figure (Student's t with one degree of freedom)
 Floats = NDArray[np.float64]
 _MARKERS = ("o", "s", "^", "D", "v", "P")
 _LEGEND = (
@@ -43,12 +45,13 @@ def draw(results: Results) -> dict[str, str]:
     Returns
     -------
     drawings : dict
-        Name of the file without ending ─► SVG text.
+        Name of the file without ending ─► SVG text. A salt that no run dissolves has none: a heat of dilution is no
+        enthalpy of solution, and has no place on its axis.
     """
     names = file_names([str(salt) for salt in results.salts["salt"]])
-    runs = dict(iter(results.runs.groupby("salt", sort=False)))
+    runs = dict(iter(_drawable(results).groupby("salt", sort=False)))
     curves = dict(iter(results.curves.groupby("salt", sort=False)))
-    none = results.runs.iloc[:0], results.curves.iloc[:0]
+    none = results.curves.iloc[:0]
     order = _calorimeters(results.runs)
     drawings: dict[str, str] = {}
     with mpl.rc_context():
@@ -56,7 +59,9 @@ def draw(results: Results) -> dict[str, str]:
         mpl.rcParams.update(cast(Any, STYLE))
         for salt in rows(results.salts):
             key = salt["salt"]
-            figure = _salt(salt, runs.get(key, none[0]), curves.get(key, none[1]), order)
+            if key not in runs:
+                continue
+            figure = _salt(salt, runs[key], curves.get(key, none), order)
             drawings[names[key]] = _svg(figure, f"{key}: enthalpy of solution against molality")
         if len(results.comparison):
             name = SCORES
@@ -64,6 +69,13 @@ def draw(results: Results) -> dict[str, str]:
                 name += "_"
             drawings[name] = _svg(scores(results.comparison), "Scores against published values")
     return drawings
+
+
+def _drawable(results: Results) -> pd.DataFrame:
+    """Runs with a place in a figure: dissolutions; an addition only where the model says what water would have done."""
+    kind = kinds(results.campaign)
+    limited = results.salts["salt"][np.isfinite(results.salts["standard_enthalpy"].to_numpy(float))]
+    return results.runs[~kind.dilution & (~kind.addition | results.runs["salt"].isin(limited).to_numpy())]
 
 
 def _svg(figure: Figure, title: str) -> str:
@@ -78,24 +90,30 @@ def _calorimeters(runs: pd.DataFrame) -> tuple[str, ...]:
 
 
 def _salt(salt: dict[str, Any], runs: pd.DataFrame, curve: pd.DataFrame, order: tuple[str, ...]) -> Figure:
-    """One salt: runs and model above, the runs brought to infinite dilution below."""
-    figure = Figure(figsize=(WIDTH, 5.6), layout="constrained")
-    above, below = figure.subplots(2, 1, sharex=True, gridspec_kw={"height_ratios": [2.6, 1]})
+    """One salt: runs and model; below them, where there is a limit, the runs brought to infinite dilution."""
     limit = float(salt["standard_enthalpy"])
     known = bool(np.isfinite(limit))
+    figure = Figure(figsize=(WIDTH, 5.6 if known else 4.0), layout="constrained")
+    panels = list(
+        figure.subplots(2, 1, sharex=True, gridspec_kw={"height_ratios": [2.6, 1]}) if known else [figure.subplots()]
+    )
     low, high = float(salt["interval_low"]), float(salt["interval_high"])
+    most = MOST_FACTOR * float(salt["u"])
+    if high - low > 2 * most:
+        low, high = limit - most, limit + most
     if len(runs) > MOST_POINTS:
         runs = runs.iloc[np.linspace(0, len(runs) - 1, MOST_POINTS).round().astype(int)]
     if len(curve):
-        _curves(above, curve, float(salt["coverage_factor"]))
+        _curves(panels[0], curve, float(salt["coverage_factor"]))
     if known:
+        above, below = panels
         above.plot([0, 0], [low, high], color=LIGHT["law"], lw=2.4, solid_capstyle="butt", zorder=5, clip_on=False)
         above.plot([0], [limit], "D", ms=6, color=LIGHT["law"], zorder=6, clip_on=False, label="at infinite dilution")
         below.axhspan(low - limit, high - limit, color=LIGHT["band"], lw=0)
         below.axhline(0, color=LIGHT["model"], lw=1.1)
-    _points((above, below), runs, curve, (limit, low, high), order)
-    _frame(above, below, runs, curve, known)
-    handles = sorted(zip(*above.get_legend_handles_labels(), strict=True), key=_order)
+    _points(panels, runs, curve, (limit, low, high), order)
+    _frame(panels, runs, curve)
+    handles = sorted(zip(*panels[0].get_legend_handles_labels(), strict=True), key=_order)
     figure.legend(
         [handle for handle, _ in handles],
         [label for _, label in handles],
@@ -114,7 +132,7 @@ def _order(entry: tuple[Any, str]) -> int:
 def _curves(axes: Axes, curve: pd.DataFrame, factor: float) -> None:
     x = np.sqrt(curve["molality"].to_numpy(float))
     model, u = curve["enthalpy"].to_numpy(float), curve["u"].to_numpy(float)
-    half = u * (factor if np.isfinite(factor) else 2.0)
+    half = u * (min(factor, MOST_FACTOR) if np.isfinite(factor) else 2.0)
     axes.fill_between(x, model - half, model + half, color=LIGHT["band"], lw=0, zorder=1, label="its 95 % band")
     axes.plot(x, model, color=LIGHT["model"], lw=1.6, zorder=3, label="model")
     styles = (
@@ -129,14 +147,13 @@ def _curves(axes: Axes, curve: pd.DataFrame, factor: float) -> None:
 
 
 def _points(
-    panels: tuple[Axes, Axes],
+    panels: list[Axes],
     runs: pd.DataFrame,
     curve: pd.DataFrame,
     span: tuple[float, float, float],
     order: tuple[str, ...],
 ) -> None:
     """Runs by calorimeter; each at its own molality, brought to the reference temperature as the model does."""
-    above, below = panels
     limit = span[0]
     molality = runs["molality / (mol/kg)"].to_numpy(float)
     residual = runs["standard_enthalpy / (kJ/mol)"].to_numpy(float) - limit
@@ -147,21 +164,23 @@ def _points(
     model = np.concatenate([curve["enthalpy"].to_numpy(float), span])
     u = runs["u(standard_enthalpy) / (kJ/mol)"].to_numpy(float)
     u = np.where(np.isfinite(u), u, runs["u(enthalpy) / (kJ/mol)"].to_numpy(float))
-    _panel(above, (molality, height, u), runs, model, order)
-    _panel(below, (molality, residual, u), runs, np.array(span) - limit, order)
+    _panel(panels[0], (molality, height, u), runs, model, order)
+    for below in panels[1:]:
+        _panel(below, (molality, residual, u), runs, np.array(span) - limit, order)
     if not runs["included"].all():
-        above.plot([], [], "o", ms=4.6, color=LIGHT["mark"], mfc=LIGHT["paper"], label="excluded")
+        panels[0].plot([], [], "o", ms=4.6, color=LIGHT["mark"], mfc=LIGHT["paper"], label="excluded")
 
 
 def _panel(
     axes: Axes, points: tuple[Floats, Floats, Floats], runs: pd.DataFrame, model: Floats, order: tuple[str, ...]
 ) -> None:
-    """One panel's runs; its limits go by model and included runs, an excluded one beyond is an arrow at the edge."""
+    """One panel's runs; its limits go by model and included runs (by all where none is); others beyond are arrows."""
     molality, height, u = points
     included = runs["included"].to_numpy(bool)
     bar = np.where(np.isfinite(u), u, 0.0)
-    usual = np.minimum(bar, float(np.median(bar[included]))) if included.any() else bar
-    reach = np.concatenate([(height - usual)[included], (height + usual)[included], model])
+    inside = included if included.any() else ~included
+    usual = np.minimum(bar, float(np.median(bar[inside])))
+    reach = np.concatenate([(height - usual)[inside], (height + usual)[inside], model])
     reach = reach[np.isfinite(reach)] if np.isfinite(reach).any() else np.array([0.0, 1.0])
     room = 0.1 * float(np.ptp(reach)) or 0.05
     low, high = float(reach.min()) - room, float(reach.max()) + room
@@ -175,7 +194,7 @@ def _panel(
             here = (calorimeter == name) & (included == kept)
             if here.any():
                 colour = LIGHT["ink"] if kept else LIGHT["mark"]
-                inside = colour if kept and number == 0 else LIGHT["paper"]
+                filling = colour if kept and number == 0 else LIGHT["paper"]
                 axes.errorbar(
                     x[here],
                     height[here],
@@ -183,7 +202,7 @@ def _panel(
                     fmt=shape,
                     ms=4.6,
                     color=colour,
-                    mfc=inside,
+                    mfc=filling,
                     mew=1.0,
                     elinewidth=0.8,
                     zorder=4,
@@ -196,22 +215,20 @@ def _panel(
             drawn[0].set_in_layout(False)
 
 
-def _frame(above: Axes, below: Axes, runs: pd.DataFrame, curve: pd.DataFrame, known: bool) -> None:
+def _frame(panels: list[Axes], runs: pd.DataFrame, curve: pd.DataFrame) -> None:
     measured = runs["molality / (mol/kg)"].to_numpy(float)
     most = float(np.nanmax([*measured, *curve["molality"].to_numpy(float)[-1:], 1e-6]))
     right = np.sqrt(most) * 1.04
-    above.set_xlim(-0.025 * right, right)
+    panels[0].set_xlim(-0.025 * right, right)
     ticks = _round_molalities(most)
-    below.set_xticks(np.sqrt(ticks), [f"{m:g}" for m in ticks])
-    below.set_xlabel("molality / (mol/kg), spaced by its square root")
-    above.set_ylabel("enthalpy of solution / (kJ/mol)")
-    below.set_ylabel("run − limit\n/ (kJ/mol)")
-    for axes in (above, below):
+    panels[-1].set_xticks(np.sqrt(ticks), [f"{m:g}" for m in ticks])
+    panels[-1].set_xlabel("molality / (mol/kg), spaced by its square root")
+    panels[0].set_ylabel("enthalpy of solution / (kJ/mol)")
+    for below in panels[1:]:
+        below.set_ylabel("run − limit\n/ (kJ/mol)")
+    for axes in panels:
         axes.grid(axis="y", color=LIGHT["grid"], lw=0.6, zorder=0)
         axes.set_axisbelow(True)
-    if not known:
-        below.set_yticks([])
-        below.text(0.5, 0.5, "no limit", ha="center", va="center", transform=below.transAxes)
 
 
 def _round_molalities(most: float) -> list[float]:

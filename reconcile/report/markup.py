@@ -6,6 +6,8 @@ import re
 
 from markupsafe import Markup, escape
 
+from reconcile.chemistry import IONS
+
 _SUBSCRIPTS = str.maketrans("0123456789", "₀₁₂₃₄₅₆₇₈₉")
 
 
@@ -16,9 +18,11 @@ def formula(text: object) -> Markup:
     --------
     >>> print(formula("CaCl2·6H2O"), formula("SO4-2"), formula("<b>"))
     CaCl<sub>2</sub>·6H<sub>2</sub>O SO<sub>4</sub><sup>2−</sup> &lt;b&gt;
+    >>> print(formula("(NH4)2SO4"))
+    (NH<sub>4</sub>)<sub>2</sub>SO<sub>4</sub>
     """
     whole = str(text)
-    if not re.fullmatch(r"[A-Z][A-Za-z0-9()·.+\-]*(\((cr|aq|l|g|s)\))?", whole):
+    if not re.fullmatch(r"[A-Z(][A-Za-z0-9()·.+\-]*(\((cr|aq|l|g|s)\))?", whole):
         return escape(whole)
     found = re.fullmatch(r"(.+?)([+-])(\d*)(\((?:cr|aq|l|g|s)\))?", whole)
     body, charge, phase = (
@@ -52,14 +56,14 @@ def minus(text: object) -> str:
 
 
 def list_of_formulae(text: object) -> Markup:
-    """A sentence in which every word that is a salt's formula has its subscripts."""
+    """A sentence in which every word that is a salt's formula or a known ion has its subscripts and charge."""
     parts = re.split(r"(\s+)", str(text))
     return Markup("").join(_word(part) for part in parts)
 
 
 def _word(part: str) -> Markup:
     core = part.rstrip(",.;:")
-    if (
+    if core in IONS or (
         re.fullmatch(r"(?:[A-Z][a-z]?\d*|\((?:[A-Z][a-z]?\d*)+\)\d+|·\d*(?:\.\d+)?)+", core)
         and re.search(r"\d", core)
         and re.search(r"[A-Z][A-Za-z(]", core)

@@ -15,6 +15,7 @@ from reconcile.report.cautions import CAUTIONS
 from reconcile.report.figures import SCORES
 from reconcile.report.markup import formula, list_of_formulae, minus
 from reconcile.report.material import Material
+from reconcile.report.method import numbers
 from reconcile.report.palette import themed
 from reconcile.report.results import whole_test
 from reconcile.report.rounding import probability, significant
@@ -57,6 +58,7 @@ def render(material: Material) -> Iterator[tuple[str, bytes]]:
             sources=views.sources(results.sources) if len(results.sources) else None,
             assumptions=views.assumptions(results.assumptions) if len(results.assumptions) else None,
             cautions=CAUTIONS,
+            method=numbers(),
         )
     )
     yield "index.html", page.encode("utf-8", "replace")

@@ -40,7 +40,7 @@ def _whole(results: Results) -> Record:
             "pressure": float(campaign.pressure),
             "formation_set": campaign.formation_set,
             "runs": len(campaign.runs),
-            "runs_included": int(np.count_nonzero(campaign.included)),
+            "runs_included": int(results.salts["runs"].sum()),
             "salts": len(campaign.salts),
         },
         "salts": _salts(results.salts),

@@ -63,7 +63,7 @@ def at_place(x: float, place: int) -> str:
 def value_and_u(value: float, u: float, digits: int = 2) -> tuple[str, str]:
     """Texts of a value and of its uncertainty, both ending at the same place.
 
-    Where u says nothing about the place (0, infinite, missing) the value gets six significant digits.
+    Where u says nothing about the place (0, infinite, missing) the value gets at most six significant digits.
 
     Examples
     --------
@@ -74,7 +74,7 @@ def value_and_u(value: float, u: float, digits: int = 2) -> tuple[str, str]:
     """
     place = place_of(u, digits)
     if place is None:
-        return significant(value, 6), "0" if u == 0 else NOTHING
+        return _alone(value), "0" if u == 0 else NOTHING
     return at_place(value, place), at_place(u, place)
 
 
@@ -99,15 +99,21 @@ def rounded(value: float, u: float, digits: int = 2) -> str:
 
     Examples
     --------
-    >>> rounded(17.58394, 0.01712), rounded(-36.9, 1.24), rounded(1234567.0, 12345.0)
-    ('17.584(17)', '-36.9(12)', '1235000(12000)')
+    >>> rounded(17.58394, 0.01712), rounded(-36.9, 1.24), rounded(1234567.0, 12345.0), rounded(0.2789, 0.0)
+    ('17.584(17)', '-36.9(12)', '1235000(12000)', '0.2789')
     """
     place = place_of(u, digits)
     if place is None or not math.isfinite(value):
-        return significant(value, 6)
+        return _alone(value)
     width = at_place_decimal(Decimal(repr(float(u))), place)
     inside = width.scaleb(-place) if place <= 0 else width
     return f"{at_place(value, place)}({int(inside)})"
+
+
+def _alone(value: float) -> str:
+    """A value that has no u: six significant digits, without zeros that nobody measured."""
+    shown = significant(value, 6)
+    return shown.rstrip("0").rstrip(".") if "." in shown and "×" not in shown else shown
 
 
 def interval_at(low: float, high: float, u: float) -> tuple[str, str]:

@@ -10,13 +10,17 @@ from typing import Any
 import pandas as pd
 from markupsafe import Markup
 
-from reconcile.report.cells import Line, View, freedom, p_value, pair, percent, span, text, two_places, view
+from reconcile.report.cells import Line, View, freedom, p_value, pair, percent, span, view
+from reconcile.report.figures import MOST_FACTOR
+from reconcile.report.kinds import counted_kinds, kinds
 from reconcile.report.markup import formula, minus
 from reconcile.report.material import Material
 from reconcile.report.palette import themed
 from reconcile.report.results import rows
-from reconcile.report.rounding import NOTHING, rounded, significant, value_and_u
+from reconcile.report.rounding import significant, value_and_u
+from reconcile.report.salt_runs import runs_of
 from reconcile.report.svg import inlined
+from reconcile.report.words import sentence
 
 MOST_SECTIONS = 300  # salts with a section of their own
 MOST_FIGURES = 60  # drawings put into the page
@@ -28,21 +32,6 @@ _SYMBOLS = {  # parameter ─► its symbol and unit
     "c_phi": Markup("C<sup>φL</sup> / (kg<sup>2</sup>/(mol<sup>2</sup> K))"),
 }
 
-_RUN_HEADS = (
-    "Run",
-    "Lot",
-    "Calorimeter",
-    "Batch",
-    "Molality / (mol/kg)",
-    "Enthalpy / (kJ/mol)",
-    "Dilution / (kJ/mol)",
-    "At infinite dilution / (kJ/mol)",
-    "Standardised residual",
-    "Remark",
-)
-_RUN_ALWAYS = (0, 4, 5, 6, 7, 8)
-_RUN_NUMERIC = (4, 5, 6, 7, 8)
-
 
 @dataclass(frozen=True, slots=True)
 class Section:
@@ -52,8 +41,10 @@ class Section:
     title: Markup
     lead: str  # its value in one line
     reason: str  # why there is no limit
+    remarks: str  # what to mind of the extrapolation
     figure: Markup | None
-    figure_file: str  # where the drawing stands if it is not in the page
+    caption: str  # of the figure
+    undrawn: str  # why there is no figure here
     facts: list[tuple[str | Markup, str | Markup]]
     budget: View | None
     smoothed: View | None
@@ -75,6 +66,7 @@ def sections(material: Material) -> list[Section]:
     results = material.results
     chosen = rows(results.salts)[:MOST_SECTIONS]
     runs = dict(iter(results.runs.groupby("salt", sort=False)))
+    kind = kinds(results.campaign)
     budget = dict(iter(results.budget.groupby("salt", sort=False)))
     drawings = material.drawings if len(results.salts) <= MOST_FIGURES else {}
     temperature = f"{results.campaign.reference_temperature:g} K"
@@ -87,6 +79,8 @@ def sections(material: Material) -> list[Section]:
             if known
             else "No limit at infinite dilution is given."
         )
+        own = runs.get(salt)
+        count = kind.counted(own.index.to_numpy()) if own is not None else (0, 0, 0)
         drawing = (
             Markup(
                 themed(inlined(drawings[name], f"f-{name}", f"Figure of {salt}; its numbers stand in the tables below"))
@@ -99,21 +93,45 @@ def sections(material: Material) -> list[Section]:
                 anchor=f"salt-{name}",
                 title=formula(salt),
                 lead=lead,
-                reason="" if known else text(row["reason"]),
+                reason="" if known else sentence(row["reason"]),
+                remarks="; ".join(row["remarks"]),
                 figure=drawing,
-                figure_file=f"figures/{name}.svg",
-                facts=_facts(row),
+                caption=_caption(temperature, row, count),
+                undrawn=(
+                    f"The drawing is in figures/{name}.svg, where figures were asked for."
+                    if count[0] + count[1]
+                    else "Nothing is drawn: no run dissolves this salt."
+                ),
+                facts=_facts(row, count),
                 budget=_budget(budget.get(salt), row) if known else None,
                 smoothed=_smoothed(row["smoothed"]),
-                runs=_runs(runs.get(salt)),
+                runs=runs_of(own, kind),
             )
         )
     return found
 
 
-def _facts(row: Mapping[str, Any]) -> list[tuple[str | Markup, str | Markup]]:
+def _caption(temperature: str, row: Mapping[str, Any], count: tuple[int, int, int]) -> str:
+    """What a salt's figure shows."""
+    if not math.isfinite(row["standard_enthalpy"]):
+        return "dissolutions in water as measured. No model is drawn, for there is no limit."
+    text = (
+        f"runs brought to {temperature}, and below to infinite dilution as well, against the 95 % interval of the "
+        "limit. Bars: one standard uncertainty, dilution and scatter included. Grey: what a straight line in m or in "
+        "√m would have given. An arrow at the edge stands for an excluded run beyond it."
+    )
+    if row["coverage_factor"] > MOST_FACTOR:
+        text += f" The interval reaches far out of the figure; {MOST_FACTOR:g} u are drawn."
+    if count[1]:
+        text += " A successive addition stands where the same salt would in water, at the molality that it ended at."
+    return text + (" Heats of dilution stand in the table of runs only." if count[2] else "")
+
+
+def _facts(row: Mapping[str, Any], count: tuple[int, int, int]) -> list[tuple[str | Markup, str | Markup]]:
     facts: list[tuple[str | Markup, str | Markup]] = [("Molar mass", f"{row['molar_mass']:.3f} g/mol")]
-    if math.isfinite(row["standard_enthalpy"]):
+    facts.append(("Runs", counted_kinds(count)))
+    known = math.isfinite(row["standard_enthalpy"])
+    if known:
         facts += [
             ("95 % interval", f"{span(row['interval_low'], row['interval_high'], row['u'])} kJ/mol"),
             (
@@ -125,18 +143,23 @@ def _facts(row: Mapping[str, Any]) -> list[tuple[str | Markup, str | Markup]]:
                 f"{significant(row['u_random'], 2)} and {significant(row['u_shared'], 2)} kJ/mol",
             ),
         ]
-    facts.append(("Dilution parameters from", _model(row)))
+        facts.append(("Dilution parameters from", _model(row)))
     if math.isfinite(row["prior_conflict_p"]):
         facts.append(("Do the runs contradict the prior?", f"p = {p_value(row['prior_conflict_p'])}"))
     facts += [(_SYMBOLS.get(name, name), pair(value, u)) for name, (value, u) in row["parameters"].items()]
     facts.append(("Debye–Hückel slope, computed", Markup("{} {}").format(significant(row["slope"], 4), _SLOPE_UNIT)))
-    free = _free(row["free_slope"])
-    if free != NOTHING:
-        facts.append(("Slope that the runs alone would choose", Markup("{} {}").format(free, _SLOPE_UNIT)))
-    if math.isfinite(row["heat_capacity_change"]):
-        facts.append(
-            ("Heat capacity of dissolution", f"{minus(significant(row['heat_capacity_change'], 3))} J/(K mol)")
+    if math.isfinite(row["free_slope"]):
+        free = pair(row["free_slope"], row["u_free_slope"])
+        facts.append(("Slope that the runs would choose", Markup("{} {}").format(free, _SLOPE_UNIT)))
+    if known and math.isfinite(row["line_m"]):
+        lines = " and ".join(minus(value_and_u(row[key], row["u"])[0]) for key in ("line_m", "line_root"))
+        facts.append(("A straight line in m, in √m, would say", f"{lines} kJ/mol"))
+    if known and math.isfinite(row["heat_capacity_change"]):
+        u = row["u_heat_capacity_change"]
+        shown = (
+            pair(row["heat_capacity_change"], u) if math.isfinite(u) else significant(row["heat_capacity_change"], 3)
         )
+        facts.append(("Heat capacity of dissolution", f"{minus(shown)} J/(K mol)"))
     if math.isfinite(row["between_batch_sd"]):
         facts.append(("Between batches, standard deviation", f"{significant(row['between_batch_sd'], 2)} kJ/mol"))
     if math.isfinite(row["recommended_value"]):
@@ -152,12 +175,6 @@ def _facts(row: Mapping[str, Any]) -> list[tuple[str | Markup, str | Markup]]:
 def _model(row: Mapping[str, Any]) -> str:
     share = f"; prior share {percent(row['prior_share'])}" if math.isfinite(row["prior_share"]) else ""
     return f"{row['dilution_model']}{share}"
-
-
-def _free(value: Any) -> str:
-    if isinstance(value, tuple | list):
-        return pair(float(value[0]), float(value[1]))
-    return minus(significant(float(value), 3)) if value is not None and math.isfinite(value) else NOTHING
 
 
 def _budget(table: pd.DataFrame | None, row: Mapping[str, Any]) -> View | None:
@@ -189,32 +206,3 @@ def _smoothed(found: Any) -> View | None:
     lines: list[Line] = [(f"{line['molality']:g}", pair(line["enthalpy"], line["u"])) for line in found]
     heads = ("Molality / (mol/kg)", "ΔsolH / (kJ/mol)")
     return view("Smoothed at round molalities", heads, {0, 1}, lines) if lines else None
-
-
-def _runs(table: pd.DataFrame | None) -> View | None:
-    if table is None or not len(table):
-        return None
-    lines: list[Line] = []
-    for row in rows(table):
-        limit, u = row["standard_enthalpy / (kJ/mol)"], row["u(standard_enthalpy) / (kJ/mol)"]
-        correction = row["dilution_correction / (kJ/mol)"]
-        lines.append(
-            (
-                text(row["run"]),
-                text(row["sample"]),
-                text(row["calorimeter"]),
-                text(row["batch"]),
-                significant(row["molality / (mol/kg)"], 4),
-                minus(rounded(row["enthalpy / (kJ/mol)"], row["u(enthalpy) / (kJ/mol)"])),
-                minus(value_and_u(correction, u)[0]),
-                minus(rounded(limit, u)),
-                two_places(row["standardised_residual"]),
-                "" if row["included"] else f"excluded: {text(row['reason'])}",
-            )
-        )
-    used = [place for place in range(len(_RUN_HEADS)) if place in _RUN_ALWAYS or any(line[place] for line in lines)]
-    heads = [_RUN_HEADS[place] for place in used]
-    numeric = [position for position, place in enumerate(used) if place in _RUN_NUMERIC]
-    kept = [tuple(line[place] for place in used) for line in lines]
-    marked = [i for i, row in enumerate(rows(table)) if abs(row["standardised_residual"]) > 3 or not row["included"]]
-    return view("Runs", heads, numeric, kept, "", marked)

@@ -7,10 +7,12 @@ import json
 from collections.abc import Iterator
 from typing import Any
 
+import numpy as np
 import pandas as pd
 
 from reconcile import __version__
 from reconcile.report.columns import PRIMARY_KEYS, TABLES, Column, Kind
+from reconcile.report.kinds import WORDS, kinds
 from reconcile.report.material import Material
 from reconcile.report.results import Results
 
@@ -80,12 +82,21 @@ def _kind(series: pd.Series[Any]) -> Kind | None:
 
 
 def _tables(results: Results) -> Iterator[tuple[str, pd.DataFrame]]:
-    for name in ("salts", "runs", "reconciled", "references", "cycles", "bias", "comparison", "budget", "assumptions"):
+    yield "salts", results.salts
+    yield "runs", _runs(results)
+    for name in ("reconciled", "references", "cycles", "bias", "comparison", "budget", "assumptions"):
         yield name, getattr(results, name)
     yield "sources", results.sources
     yield "smoothed", _smoothed(results)
     yield "parameters", _parameters(results)
     yield "covariance", _covariance(results)
+
+
+def _runs(results: Results) -> pd.DataFrame:
+    """The runs with what kind each is and where it started."""
+    kind = kinds(results.campaign)
+    words = np.array([one for one, _ in WORDS], dtype=object)
+    return results.runs.assign(**{"kind": words[kind.code], "initial_molality / (mol/kg)": kind.initial_molality})
 
 
 def _smoothed(results: Results) -> pd.DataFrame:

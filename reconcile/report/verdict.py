@@ -11,8 +11,10 @@ import pandas as pd
 from reconcile.report.markup import minus
 from reconcile.report.results import Results, rows, whole_test
 from reconcile.report.rounding import interval_at, probability, rounded, significant
+from reconcile.report.words import counted, listed
 
 LEVEL = 0.05  # of every test spoken of here
+LOOSE = 12.8  # coverage factor beyond which fewer than one degree of freedom stands behind u (Student's t)
 MOST_NAMED = 5  # suspects named beside the first
 _NAMED = {  # hypothesis ─► words for it, {} being its subject
     "gain": "a gain of calorimeter {}",
@@ -60,17 +62,6 @@ def _kept_together(sentence: str) -> str:
     return sentence
 
 
-def counted(number: int, one: str, many: str = "") -> str:
-    """Number with its noun.
-
-    Examples
-    --------
-    >>> counted(1, "salt"), counted(3, "salt"), counted(0, "hypothesis", "hypotheses")
-    ('1 salt', '3 salts', 'no hypotheses')
-    """
-    return f"{number or 'no'} {one if number == 1 else many or one + 's'}"
-
-
 def sized(row: dict[str, Any], key: str = "size") -> str:
     """A size of a bias row with its unit; a pure number in per cent."""
     value, u, unit = float(row[key]), float(row["u"]), str(row["unit"])
@@ -96,7 +87,7 @@ def named(row: dict[str, Any]) -> str:
 def _amount(results: Results) -> str:
     salts = results.salts
     given = salts[np.isfinite(salts["standard_enthalpy"].to_numpy(float))]
-    included, total = int(np.count_nonzero(results.campaign.included)), len(results.campaign.runs)
+    included, total = int(salts["runs"].sum()), len(results.campaign.runs)
     if total == 1:
         runs = "The one run" if included else "No run"
     else:
@@ -110,9 +101,16 @@ def _amount(results: Results) -> str:
         text += f", with standard uncertainties from {significant(u.min(), 2)} to {significant(u.max(), 2)} kJ/mol"
     elif len(u):
         text += f", with a standard uncertainty of {significant(u[0], 2)} kJ/mol"
+    loose = [str(s) for s in given["salt"][given["coverage_factor"].to_numpy(float) > LOOSE]]
+    if loose:
+        whose = "its" if len(loose) == 1 else "their"
+        text += (
+            f". The runs of {listed(loose)} are too few to tell their own scatter: {whose} interval is what counts, "
+        )
+        text += "for it goes far beyond what u says"
     without = [str(s) for s in salts["salt"][~np.isfinite(salts["standard_enthalpy"].to_numpy(float))]]
     if without:
-        text += f". No limit is given for {_listed(without)}; the reason stands with the salt"
+        text += f". No limit is given for {listed(without)}; the reason stands with the salt"
     return text + "."
 
 
@@ -146,9 +144,9 @@ def _suspicion(bias: pd.DataFrame) -> str:
         f"The measurements are compatible with {named(first)}: {sized(first)}, 95 % interval {sized_interval(first)}, "
         f"adjusted p = {probability(first['p_adjusted'])}"
     )
-    text += f"; this rests on {_listed(first['rests_on'])}" if len(first["rests_on"]) else ""
+    text += f"; this rests on {listed(first['rests_on'])}" if len(first["rests_on"]) else ""
     if len(first["confounded_with"]):
-        text += f" and cannot be told from {_listed(first['confounded_with'])} here"
+        text += f" and cannot be told from {listed(first['confounded_with'])} here"
     if len(serious) == 1:
         return text + "."
     named_ones = [f"{named(row)}, {sized(row)}" for row in serious[1 : 1 + MOST_NAMED]]
@@ -193,7 +191,7 @@ def _agreement(salts: pd.DataFrame) -> str:
     ):
         names = [str(s) for s in salts["salt"][salts["verdict"] == word]]
         if names:
-            text += f"; {_listed(names)} {one if len(names) == 1 else many}"
+            text += f"; {listed(names)} {one if len(names) == 1 else many}"
     missing = count.get("no reference", 0)
     return text + (f"; {counted(missing, 'salt')} {'has' if missing == 1 else 'have'} none." if missing else ".")
 
@@ -209,11 +207,3 @@ def _assumed(assumptions: pd.DataFrame) -> str:
         words = str(assumptions["text"].iloc[largest]).rstrip(".")
         text += f"; the largest known effect, {significant(size[largest], 2)} kJ/mol, is that of “{words}”"
     return text + "."
-
-
-def _listed(names: Any, most: int = 4) -> str:
-    """Names with commas and a last "and"; beyond ``most`` the number of the others."""
-    shown = [str(name) for name in names]
-    if len(shown) > most:
-        shown = [*shown[: most - 1], f"{len(shown) - most + 1} others"]
-    return shown[0] if len(shown) == 1 else f"{', '.join(shown[:-1])} and {shown[-1]}"

@@ -32,7 +32,7 @@ def salts(results: Results, anchors: dict[str, str]) -> View:
                 freedom(row["degrees_of_freedom"]),
                 str(row["runs"]),
                 reach[0] if reach[0] == reach[1] else " to ".join(reach),
-                str(row["dilution_model"]),
+                str(row["dilution_model"]) if math.isfinite(row["standard_enthalpy"]) else NOTHING,
                 percent(row["prior_share"]),
                 word(row["verdict"]),
             )
@@ -224,7 +224,7 @@ def scores(table: pd.DataFrame) -> View:
     ]
     heads = ("Salt", "At", "Measured", "Published", "Difference", "ζ", "Eₙ", "Verdict", "Source", "Status")
     note = (
-        "kJ/mol. The verdict is by ζ: satisfactory up to 2, unsatisfactory from 3 (ISO 13528). "
+        "kJ/mol. The verdict is by ζ: satisfactory up to 2, unsatisfactory from 3 on (ISO 13528). "
         "Eₙ stands beside it with its own limit of 1."
     )
     return view("Scores against published values", heads, {2, 3, 4, 5, 6}, lines, note)

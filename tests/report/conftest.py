@@ -19,6 +19,11 @@ def _salts() -> pd.DataFrame:
         "slope": 1.972,
         "molality_min": 0.0125,
         "between_batch_sd": NAN,
+        "u_free_slope": NAN,
+        "line_m": NAN,
+        "line_root": NAN,
+        "u_heat_capacity_change": NAN,
+        "remarks": (),
         "reason": "",
         "parameters": {"beta0": (5.8e-4, 2.1e-5), "beta1": (1.07e-3, 9e-5), "c_phi": (-5.1e-5, 8e-6)},
         "smoothed": [{"molality": 0.1, "enthalpy": 17.61, "u": 0.02}, {"molality": 1.0, "enthalpy": 17.39, "u": 0.03}],
@@ -37,13 +42,17 @@ def _salts() -> pd.DataFrame:
                 "interval_high": 17.270,
                 "u_random": 0.015,
                 "u_shared": 0.02,
-                "runs": 5,
+                "runs": 4,
                 "molality_max": 1.02,
                 "dilution_model": "published parameters",
                 "prior_share": 0.62,
                 "prior_conflict_p": 0.44,
                 "free_slope": 2.05,
+                "u_free_slope": 0.11,
+                "line_m": 17.41,
+                "line_root": 17.33,
                 "heat_capacity_change": -160.0,
+                "u_heat_capacity_change": 4.0,
                 "verdict": "agrees",
                 "standard_enthalpy_without_suspects": 17.2012,
                 "u_without_suspects": 0.0201,
@@ -89,7 +98,7 @@ def _salts() -> pd.DataFrame:
                 "interval_high": NAN,
                 "u_random": NAN,
                 "u_shared": NAN,
-                "runs": 1,
+                "runs": 0,
                 "molality_max": 0.0125,
                 "dilution_model": "limiting law only",
                 "prior_share": NAN,
@@ -126,6 +135,7 @@ def _runs() -> pd.DataFrame:
         "standard_enthalpy / (kJ/mol)",
         "u(standard_enthalpy) / (kJ/mol)",
         "standardised_residual",
+        "influence / (kJ/mol)",
     )
     lines = [
         ("R001", "KCl", "K-1", "A", "2031-03-01", True, "", 0.0125, 17.33, 0.05, -0.11, 17.22, 0.06, 0.1),
@@ -165,9 +175,24 @@ def _runs() -> pd.DataFrame:
         ),
         ("-6", "CaCl2·6H2O", "", "A", "", True, "", 0.11, 16.4, NAN, -1.6, 14.8, 0.3, -0.4),
         ("R007", "CaCl2·6H2O", "", "A", "", True, "", 0.51, 17.2, NAN, -2.2, 15.0, 0.3, 0.4),
-        ("R008", "Na2CO3", "", "", "", True, "", 0.0125, -24.0, 0.2, NAN, NAN, NAN, NAN),
+        (
+            "R008",
+            "Na2CO3",
+            "",
+            "",
+            "",
+            False,
+            "its salt has no limit at infinite dilution",
+            0.0125,
+            -24.0,
+            0.2,
+            NAN,
+            NAN,
+            NAN,
+            NAN,
+        ),
     ]
-    return pd.DataFrame(lines, columns=list(heads))
+    return pd.DataFrame([(*line, 0.001 * line[-1]) for line in lines], columns=list(heads))
 
 
 def _curves(salts: pd.DataFrame) -> pd.DataFrame:
@@ -191,6 +216,18 @@ def _curves(salts: pd.DataFrame) -> pd.DataFrame:
     return pd.concat(parts, ignore_index=True)
 
 
+class Runs:
+    """As many runs as asked for, all of them dissolutions in water."""
+
+    def __init__(self, number: int) -> None:
+        self.number = number
+        names = ("initial_molality", "final_molality")
+        self.quantities = {name: SimpleNamespace(value=np.full(number, NAN)) for name in names}
+
+    def __len__(self) -> int:
+        return self.number
+
+
 def _campaign() -> SimpleNamespace:
     return SimpleNamespace(
         title="Invented season & <b>bold</b>",
@@ -200,7 +237,7 @@ def _campaign() -> SimpleNamespace:
         formation_set="NBS-1982",
         date="2031-04-01",
         notes=(("R001", "<i>first</i> of the day"),),
-        runs=range(8),
+        runs=Runs(8),
         included=np.array([True] * 4 + [False] + [True] * 3),
         salts=("KCl", "CaCl2·6H2O", "Na2CO3"),
         checksums={"runs.csv": "ab" * 32, "campaign.toml": "cd" * 32},
@@ -402,6 +439,29 @@ def _invented() -> SimpleNamespace:
         assumptions=pd.DataFrame(assumptions, columns=["text", "affects", "u_contribution"]),
         sources=pd.DataFrame(sources),
     )
+
+
+@pytest.fixture
+def with_dilutions() -> Any:
+    """The same with two runs more of KCl, an addition and a heat of dilution, and NaBr, which is only diluted."""
+    results = _invented()
+    more = [
+        ("R009", "KCl", "", "A", "", True, "", 0.5, 17.1, 0.05, 0.12, 17.22, 0.07, 0.0),
+        ("R010", "KCl", "", "A", "", True, "", 0.25, -0.31, 0.02, NAN, NAN, NAN, 0.4),
+        ("R011", "NaBr", "", "A", "", True, "", 0.1, 0.2789, 0.0, NAN, NAN, NAN, 1.2),
+    ]
+    heads = list(results.runs.columns)
+    results.runs = pd.concat(
+        [results.runs, pd.DataFrame([(*line, NAN) for line in more], columns=heads)], ignore_index=True
+    )
+    diluted = results.salts.iloc[[2]].assign(salt="NaBr", runs=1, reason="only heats of dilution are included")
+    results.salts = pd.concat([results.salts, diluted], ignore_index=True)
+    results.campaign.runs = Runs(11)
+    results.campaign.included = np.append(results.campaign.included, [True] * 3)
+    results.campaign.runs.quantities["initial_molality"].value[8:] = 0.25, 1.0, 0.5
+    results.campaign.runs.quantities["final_molality"].value[9:] = 0.25, 0.1
+    results.campaign.salts = (*results.campaign.salts, "NaBr")
+    return results
 
 
 @pytest.fixture

@@ -19,6 +19,30 @@ def test_one_drawing_a_salt_and_one_of_scores(invented):
         ElementTree.fromstring(svg)
 
 
+def test_heats_of_dilution_have_no_place_in_a_figure(invented, with_dilutions):
+    plain, drawings = draw(invented), draw(with_dilutions)
+    assert set(drawings) == set(plain)  # none of NaBr, which is only diluted
+    assert drawings["CaCl2_6H2O"] == plain["CaCl2_6H2O"]
+    with_dilutions.runs = with_dilutions.runs.drop(index=9)  # the heat of dilution of KCl, near 0 kJ/mol
+    quantities = with_dilutions.campaign.runs.quantities.values()
+    for quantity in quantities:
+        quantity.value = np.delete(quantity.value, 9)
+    assert drawings["KCl"] == draw(with_dilutions)["KCl"] != plain["KCl"]
+
+
+def test_without_a_limit_there_is_one_panel_in_which_every_run_is_seen(invented):
+    text = " ".join(ElementTree.fromstring(draw(invented)["Na2CO3"]).itertext())
+    assert "run − limit" not in text
+    assert "−24" in text  # on the axis, about the one run, which is in no fit
+
+
+def test_an_interval_without_end_does_not_make_the_figure_useless(invented):
+    invented.salts.loc[0, ["interval_low", "interval_high", "coverage_factor"]] = -150.0, 185.0, 3158.0
+    text = " ".join(ElementTree.fromstring(draw(invented)["KCl"]).itertext())
+    assert "100" not in text
+    assert "17.2" in text
+
+
 def test_names_are_drawn_as_they_are(invented):
     svg = draw(invented)["KCl"]
     text = " ".join(ElementTree.fromstring(svg).itertext())
@@ -47,6 +71,7 @@ def test_settings_are_left_as_they_were(invented):
 def test_many_points_are_thinned(invented):
     one = invented.runs.iloc[[0]]
     invented.runs = one.loc[np.repeat(one.index, 5000)].reset_index(drop=True)
+    invented.campaign.runs = type(invented.campaign.runs)(5000)
     assert draw(invented)["KCl"].count("<use") < 3 * MOST_POINTS + 100
 
 

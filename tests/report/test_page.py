@@ -129,6 +129,38 @@ def test_a_salt_without_a_limit_says_why(page):
     assert "reacts with water" in page
 
 
+def test_runs_of_each_kind_are_told_apart(with_dilutions, tmp_path):
+    page = page_of(with_dilutions, tmp_path)
+    kcl, nabr = (page.split(f'id="h-salt-{name}"')[1].split("</section>")[0] for name in ("KCl", "NaBr"))
+    assert "5 dissolutions in water, 1 successive addition and 1 heat of dilution" in kcl
+    for shown in ("0.2500 to 0.5000", "successive addition", "1.000 to 0.2500", "heat of dilution", "−0.310(20)"):
+        assert f">{shown}<" in kcl
+    assert "Heats of dilution stand in the table of runs only." in kcl
+    assert "Only heats of dilution are included." in nabr
+    assert "Nothing is drawn: no run dissolves this salt." in nabr
+    assert ">0.2789<" in nabr
+    assert "limiting law" not in nabr
+    assert "nan" not in re.sub(r"<svg.*?</svg>", "", page, flags=re.DOTALL).lower().split("<main>")[1]
+
+
+def test_a_dissolution_alone_needs_no_word_for_its_kind(page):
+    assert "successive addition" not in page.split('id="method"')[0]
+    assert "heat of dilution" not in page.split('id="method"')[0]
+
+
+def test_diagnostics_stand_with_the_salt_and_not_in_the_table_of_salts(page):
+    kcl = page.split('id="h-salt-KCl"')[1].split("</section>")[0]
+    for shown in ("2.05(11) kJ kg", "17.410 and 17.330 kJ/mol", "−160.0(40) J/(K mol)"):
+        assert shown in kcl
+        assert shown not in page.split('id="each"')[0]
+
+
+def test_what_to_mind_stands_with_the_salt(invented, tmp_path):
+    assert "To mind" not in page_of(invented, tmp_path)
+    invented.salts["remarks"] = [("a single run", "KCl <b>"), (), ()]
+    assert "<p>To mind: a single run; KCl &lt;b&gt;.</p>" in page_of(invented, tmp_path)
+
+
 def test_an_empty_campaign_still_makes_a_page(invented, tmp_path):
     for name in ("reconciled", "references", "cycles", "bias", "comparison", "assumptions", "sources"):
         setattr(invented, name, getattr(invented, name).iloc[:0])

@@ -28,6 +28,9 @@ RUNS = [
     "standard_enthalpy / (kJ/mol)",
     "u(standard_enthalpy) / (kJ/mol)",
     "standardised_residual",
+    "influence / (kJ/mol)",
+    "kind",
+    "initial_molality / (mol/kg)",
 ]
 
 
@@ -46,7 +49,19 @@ def test_runs_have_one_row_each_under_the_promised_headings(folder, invented):
     heads, *lines = cells(folder / "runs.csv")
     assert heads == RUNS
     assert len(lines) == len(invented.runs)
-    assert [line[5] for line in lines] == ["true"] * 4 + ["false"] + ["true"] * 3
+    assert [line[5] for line in lines] == ["true"] * 4 + ["false"] + ["true"] * 2 + ["false"]
+
+
+def test_where_a_run_started_stands_beside_where_it_ended(with_dilutions, tmp_path):
+    write_report(with_dilutions, tmp_path, ["tables"])
+    heads, *lines = cells(tmp_path / "tables" / "runs.csv")
+    found = [(line[heads.index("kind")], float(line[heads.index("initial_molality / (mol/kg)")])) for line in lines]
+    assert found[7:] == [
+        ("dissolution in water", 0.0),
+        ("successive addition", 0.25),
+        ("heat of dilution", 1.0),
+        ("heat of dilution", 0.5),
+    ]
 
 
 def test_no_cell_starts_a_formula(folder):

@@ -3,7 +3,8 @@
 import numpy as np
 import pytest
 
-from reconcile.report.verdict import counted, verdict
+from reconcile.report.verdict import verdict
+from reconcile.report.words import counted
 
 
 def said(results):
@@ -15,7 +16,7 @@ def test_six_sentences_with_numbers(invented):
     # 14.60 without, 14.91(30) as measured in the hand-built table
     assert "1 salt would move by more than its standard uncertainty" in consequence
     assert "most of all CaCl2·6H2O, by −0.31 kJ/mol" in consequence
-    assert amount.startswith("7 of 8 runs of 3 salts give 2 standard enthalpies of solution at 298.15 K")
+    assert amount.startswith("6 of 8 runs of 3 salts give 2 standard enthalpies of solution at 298.15 K")
     assert "from 0.025 to 0.30 kJ/mol" in amount
     assert "No limit is given for Na2CO3" in amount
     assert consistent == (
@@ -26,6 +27,12 @@ def test_six_sentences_with_numbers(invented):
     assert "rests on calorimeters and references" in suspect
     assert agree == "1 of 2 salts with a published value agrees with it; CaCl2·6H2O disagrees."
     assert "0.18 kJ/mol" in assumed
+
+
+def test_a_scatter_that_nobody_knows_is_told(invented):
+    assert "too few to tell their own scatter" not in said(invented)[0]
+    invented.salts.loc[1, "coverage_factor"] = 3158.0  # 12.7 for one degree of freedom
+    assert "The runs of CaCl2·6H2O are too few to tell their own scatter" in said(invented)[0]
 
 
 def test_no_sentence_names_a_cause(invented):
