@@ -118,6 +118,18 @@ class Analysis:
         return curves_table(self.campaign, self.reduced, self.dilution)
 
 
+def _to_mind(analysis: Analysis) -> list[tuple[str, ...]]:
+    """The diagnostics of each salt of the fit, and what the significant suspects would do to it."""
+    change, u = analysis.suspicions.change, analysis.dilution.extrapolation.crystals.u
+    told = []
+    for flags, moved, of in zip(analysis.diagnostics.flags, change.tolist(), u.tolist(), strict=True):
+        suspect = (
+            f"the suspects, if they are real, have moved it by {-moved:+.2g} kJ/mol; its interval does not hold them"
+        )
+        told.append((suspect, *flags) if abs(moved) > of else flags)
+    return told
+
+
 def _salts(analysis: Analysis) -> pd.DataFrame:
     campaign, dilution, limits = analysis.campaign, analysis.dilution, analysis.dilution.extrapolation
     count = len(campaign.salts)
@@ -185,7 +197,7 @@ def _salts(analysis: Analysis) -> pd.DataFrame:
             "u_heat_capacity_change": spread(diagnostics.u_heat_capacity_change),
             "between_batch_sd": spread(between),
             "verdict": verdict,
-            "remarks": spread_objects(list(diagnostics.flags), ()),
+            "remarks": spread_objects(_to_mind(analysis), ()),
             "reason": [dilution.layout.no_limit.get(i, "") for i in range(count)],
             "smoothed": spread_objects(smoothed_of(campaign, analysis.reduced, dilution), []),
             "standard_enthalpy_without_suspects": spread(limits.crystals.value + analysis.suspicions.change),

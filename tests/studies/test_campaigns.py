@@ -60,7 +60,7 @@ def budget_gap(analysis):
 
 @pytest.mark.parametrize("declared", [True, False])
 def test_intervals_hold_the_truth(sets, run_campaign, declared):
-    "24 campaigns × 15 salts × 8 runs, 0.01 to 1 mol/kg, published parameters off: 92 to 98.5 % (issue 2, Shows 2)."
+    "24 campaigns × 15 salts × 8 runs, 0.01 to 1 mol/kg, published parameters off: 92 to 98.5 %."
     rng = np.random.default_rng(20_260_601 + declared)
     names = [n for n, kind in kind_of(sets).items() if kind in KINDS]
     inside, by_campaign, gap = [], [], 0.0
@@ -107,7 +107,7 @@ def truth_as_published(sets, salts, rng, **faults):
 
 @pytest.mark.parametrize("declared", [True, False])
 def test_a_planted_gain_is_the_first_suspect(sets, run_campaign, eight, declared):
-    "−1.2 % in one of two calorimeters, eight salts × 12 runs, 20 campaigns (issue 2, Shows 4)."
+    "−1.2 % in one of two calorimeters, eight salts × 12 runs, 20 campaigns."
     first, inside, z = 0, 0, []
     for seed in range(20):
         rng = np.random.default_rng(7_000 + seed)
