@@ -9,7 +9,7 @@ from reconcile.campaign import Campaign
 from reconcile.chemistry import water
 from reconcile.comparison import Analysis, compare
 from reconcile.cycles import adjust, network, with_own_formation_enthalpies, with_own_solution_enthalpies
-from reconcile.dilution import dilute, heat_capacity_change, published_sets
+from reconcile.dilution import at_the_tables_temperature, dilute, heat_capacity_change, published_sets
 
 
 def analyse(campaign: Campaign) -> Analysis:
@@ -40,14 +40,17 @@ def analyse(campaign: Campaign) -> Analysis:
     # cycles: all salts and the reference values in one adjustment
     published = with_own_solution_enthalpies(reference.solution_enthalpies(formulas), campaign.references)
     formation = reference.formation_enthalpies(campaign.formation_set)
-    net = network(salts, limits.crystals, with_own_formation_enthalpies(formation, campaign.references), published)
+    change = dilution.heat_capacity.take(dilution.layout.crystal)
+    measured = at_the_tables_temperature(limits.crystals, salts, change, campaign.reference_temperature)
+    net = network(salts, measured, with_own_formation_enthalpies(formation, campaign.references), published)
     adjusted = adjust(formulas, net)
 
     # bias: what could be wrong, asked of runs and cycles together
     suspicions = search_bias(campaign, runs, dilution, adjusted)
 
     # comparison: scores against published values
-    scores = compare(formulas, limits.crystals.value, limits.crystals.u, limits.half_width, published, net.circular)
+    expanded = limits.half_width * measured.u / limits.crystals.u
+    scores = compare(formulas, measured.value, measured.u, expanded, published, net.circular)
     saturation = reference.solubility(formulas)["molality"].to_numpy(float)
     return Analysis(
         campaign, runs, dilution, adjusted, suspicions, scores, published, parameters, heat_capacities, saturation

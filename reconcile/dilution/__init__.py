@@ -4,7 +4,7 @@ from reconcile.dilution.electrolytes import Electrolytes, electrolytes
 from reconcile.dilution.layout import NothingToFit
 from reconcile.dilution.priors import PublishedSets, published_sets
 from reconcile.dilution.season import Dilution, dilute, model_values
-from reconcile.dilution.temperature import HeatCapacityChange, heat_capacity_change
+from reconcile.dilution.temperature import HeatCapacityChange, at_the_tables_temperature, heat_capacity_change
 
 __all__ = [
     "Dilution",
@@ -12,6 +12,7 @@ __all__ = [
     "HeatCapacityChange",
     "NothingToFit",
     "PublishedSets",
+    "at_the_tables_temperature",
     "dilute",
     "electrolytes",
     "heat_capacity_change",

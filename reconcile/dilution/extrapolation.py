@@ -23,6 +23,10 @@ LEVEL = 0.95
 MANY = 300.0  # redundant runs above which the components' own uncertainty does not matter
 ENOUGH = 4_000  # runs, in whole electrolytes, from which components are estimated in a large campaign
 WIDTH = "width of the population"
+# What is known of a scatter before the runs, for the few that cannot say it themselves (our judgement; common practice)
+TYPICAL = 0.005  # of the enthalpy: repeatability of a solution calorimeter, within a factor of e, one sd
+BEYOND = 1.0  # of the stated uncertainty: scale of what lies beyond it, Student's t with 4 degrees of freedom
+BETWEEN = 2.0  # of the typical repeatability: scale of the scatter between batches, the same
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -89,9 +93,47 @@ def log_likelihood(problem: Problem, sizes: Floats) -> float:
     return fit.log_restricted_likelihood + weigh(problem, fit, precision).evidence
 
 
+def log_plausibility(problem: Problem, sizes: Floats) -> float:
+    """Weak knowledge of the components' sizes, worth about half a degree of freedom.
+
+    Without it one run with a declared uncertainty has an interval of ±700 u: the likelihood of a scatter that no run
+    can tell is flat for ever.
+    """
+    level = _typical(problem)
+    estimated, asked = np.zeros(len(level)), np.zeros(len(level), bool)
+    out = 0.0
+    for component, size in zip(problem.components, sizes, strict=True):
+        used = component.scale > 0
+        if component.line == "repeatability":
+            estimated += (size * component.scale) ** 2
+            asked |= used
+            continue
+        if component.group is None:
+            usual = BEYOND * np.sqrt(problem.observed.private_variance)
+        else:
+            usual = BETWEEN * level
+        out -= 2.5 * float(np.log1p((size / np.median(usual[used] / component.scale[used])) ** 2 / 4))
+    if asked.any():
+        with np.errstate(divide="ignore"):
+            away = float(np.mean(np.log(estimated[asked]) / 2 - np.log(level[asked])))
+        out -= 0.5 * away**2
+    return out
+
+
+def _typical(problem: Problem) -> Floats:
+    """A usual repeatability of each run, kJ/mol."""
+    return np.asarray(TYPICAL * np.maximum(np.abs(problem.observed.value), 1.0))
+
+
+def posterior(problem: Problem, sizes: Floats) -> float:
+    """Log-likelihood and weak knowledge of the sizes."""
+    likelihood = log_likelihood(problem, sizes)
+    return likelihood + log_plausibility(problem, sizes) if np.isfinite(likelihood) else likelihood
+
+
 def starting_sizes(problem: Problem) -> Floats:
     """Sizes of the right order: half a per cent of the enthalpy, half of what was stated."""
-    level = 0.005 * np.maximum(np.abs(problem.observed.value), 1.0)
+    level = _typical(problem)
     out = []
     for component in problem.components:
         used = component.scale > 0
@@ -113,9 +155,9 @@ def estimate_sizes(problem: Problem, start: Floats | None = None) -> tuple[Float
     """
     first = starting_sizes(problem)
     if start is None:
-        sizes = restricted_maximum(lambda s: log_likelihood(problem, s), first)
+        sizes = restricted_maximum(lambda s: posterior(problem, s), first)
     else:
-        sizes = restricted_maximum(lambda s: log_likelihood(problem, s), np.maximum(start, 0.02 * first), 0.6)
+        sizes = restricted_maximum(lambda s: posterior(problem, s), np.maximum(start, 0.02 * first), 0.6)
     return sizes, solve(problem, sizes, with_nuisance=True)[1].precision
 
 
@@ -150,7 +192,7 @@ def extrapolate(problem: Problem, gains: sparse.csr_array) -> Extrapolation:
     information = sample_fit.single_observations()[1]
     redundancy = float((information / sample_fit.weight)[: len(sample.salt)].sum())
     if redundancy < MANY and whole and len(sizes):
-        points, chance = likelihood_grid(lambda s: log_likelihood(found, s), sizes, starting_sizes(found))
+        points, chance = likelihood_grid(lambda s: posterior(found, s), sizes, starting_sizes(found))
         some = [_crystal_mixture(problem, *solve(problem, point, sweeps=1)[:2]) for point in points]
         mean = np.concatenate([m for m, _, _ in some], axis=1)
         variance = np.concatenate([v for _, v, _ in some], axis=1)

@@ -59,7 +59,7 @@ def restricted_maximum(log_likelihood: Likelihood, start: Floats, step: float = 
 
 
 def likelihood_grid(log_likelihood: Likelihood, best: Floats, start: Floats) -> tuple[Floats, Floats]:
-    """Points and weights that average over the likelihood, flat in the standard deviations.
+    """Points and weights that average over a density of the standard deviations, of which the logarithm is given.
 
     Parameters
     ----------
