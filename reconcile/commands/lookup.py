@@ -41,7 +41,8 @@ def described(found: Mapping[str, Any]) -> Iterator[str]:
     for quantity in quantities:
         values = [value for value in found["values"] if value["quantity"] == quantity]
         yield ""
-        yield f"{quantity} / {values[0]['unit']}"
+        unit = str(values[0]["unit"])
+        yield f"{quantity} / " + (f"({unit})" if "/" in unit or " " in unit else unit)
         for value in sorted(values, key=lambda value: not value["used"]):
             yield from _value(value)
     yield ""
