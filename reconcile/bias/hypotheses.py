@@ -11,6 +11,7 @@ from scipy import sparse
 
 from reconcile.calorimetry import ReducedRuns
 from reconcile.campaign import Campaign
+from reconcile.statistics import by_member
 
 Floats = NDArray[np.float64]
 
@@ -46,25 +47,11 @@ def _lots(campaign: Campaign) -> tuple[str, ...]:
 
 
 def _gain(campaign: Campaign, runs: ReducedRuns) -> sparse.csr_array:
-    return spread(runs.enthalpy.value, campaign.calorimeter, len(campaign.calorimeters))
+    return by_member(runs.enthalpy.value, campaign.calorimeter, len(campaign.calorimeters))
 
 
 def _lot_water(campaign: Campaign, runs: ReducedRuns) -> sparse.csr_array:
-    return spread(-runs.lot_water, campaign.sample, len(campaign.samples))
-
-
-def spread(effect: Floats, code: NDArray[np.int64], members: int) -> sparse.csr_array:
-    """Each run's effect in the column of its calorimeter, lot …; sparse (n, members).
-
-    Examples
-    --------
-    >>> spread(np.array([1.0, 2.0, 3.0]), np.array([0, -1, 1]), 2).toarray()
-    array([[1., 0.],
-           [0., 0.],
-           [0., 3.]])
-    """
-    named = np.flatnonzero(code >= 0)
-    return sparse.csr_array((effect[named], (named, code[named])), shape=(len(effect), members))
+    return by_member(-runs.lot_water, campaign.sample, len(campaign.samples))
 
 
 # In the order in which confounded hypotheses take the name (design, 6).

@@ -5,9 +5,9 @@ from __future__ import annotations
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
-Floats = NDArray[np.float64]
+from reconcile.chemistry.water import MOLAR_MASS_OF_WATER
 
-MOLAR_MASS_OF_WATER = 18.015  # g/mol; from the IUPAC 2021 weights H 1.008, O 15.999 (from memory)
+Floats = NDArray[np.float64]
 
 
 def molar_enthalpy(heat: ArrayLike, mass: ArrayLike, molar_mass: ArrayLike, mass_fraction: ArrayLike = 1.0) -> Floats:

@@ -7,9 +7,10 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from reconcile.calorimetry.molar import MOLAR_MASS_OF_WATER, molality_over_all_water, molar_enthalpy
+from reconcile.calorimetry.molar import molality_over_all_water, molar_enthalpy
 from reconcile.campaign import Campaign
 from reconcile.chemistry import standard_atomic_weights
+from reconcile.chemistry.water import MOLAR_MASS_OF_WATER
 from reconcile.statistics import Collector, Ledger
 
 Floats = NDArray[np.float64]

@@ -15,8 +15,8 @@ from reconcile.campaign.problems import Problems, number
 from reconcile.campaign.quantities import Built
 from reconcile.campaign.tables import Floats, Integers, Remark, Table
 from reconcile.chemistry import Salt
+from reconcile.chemistry.water import MOLAR_MASS_OF_WATER
 
-WATER_MOLAR_MASS = 18.015  # g/mol; H 1.008, O 15.999, IUPAC 2021 conventional
 CONTRADICTION = 0.005  # a molality further than this share from that of the masses is told
 TOLD_SINGLY = 10
 
@@ -141,7 +141,7 @@ def contradictions(
     amount = mass.value[both] * fraction / molar_mass  # mol
     before = np.nan_to_num(initial.value[both])  # mol/kg
     solvent = water.value[both] / 1000  # kg
-    brought = (mass.value[both] * lot_water + amount * hydration * WATER_MOLAR_MASS) / 1000  # kg
+    brought = (mass.value[both] * lot_water + amount * hydration * MOLAR_MASS_OF_WATER) / 1000  # kg
     kilograms = solvent + brought
     weighed = (before * solvent + amount) / kilograms
     parts = (

@@ -11,6 +11,7 @@ from numpy.typing import ArrayLike, NDArray
 
 Floats = NDArray[np.float64]
 
+MOLAR_MASS_OF_WATER = 18.015  # g/mol; from the IUPAC 2021 weights H 1.008, O 15.999 (from memory)
 LOWEST, HIGHEST = 273.15, 372.7  # K; above, water at 100 kPa is steam
 PRESSURE = 1e5  # Pa
 DEGREE = 20  # of the tables: interpolation errors below 1e-9 of the value

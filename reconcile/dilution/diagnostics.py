@@ -14,6 +14,7 @@ from reconcile.dilution.models import limiting_law
 from reconcile.dilution.observing import along
 from reconcile.dilution.season import Dilution
 from reconcile.dilution.tables import ONE_TEMPERATURE
+from reconcile.dilution.temperature import HEAT_CAPACITY
 
 Floats = NDArray[np.float64]
 
@@ -95,24 +96,11 @@ def _straight_lines(runs: ReducedRuns, dilution: Dilution) -> tuple[Floats, Floa
 
 def _heat_capacity(campaign: Campaign, dilution: Dilution) -> tuple[Floats, Floats]:
     """ΔsolC_p° of each crystal: as held, moved by what runs at several temperatures say."""
-    found, at = dilution.extrapolation, dilution.layout
-    value = dilution.heat_capacity.value[at.crystal].copy()
-    u = dilution.heat_capacity.u[at.crystal].copy()
-    sources = found.fit.observations.sources
-    place = {name: i for i, name in enumerate(sources.name)}
-    narrow = {int(k): j for j, k in enumerate(found.fit.narrow)}
-    moved = found.fit.source_values()
-    here, columns = [], []
-    for c, salt in enumerate(at.crystal.tolist()):  # salts away from the reference temperature: few
-        source = place.get(f"ΔsolCp° of {campaign.salts[salt].formula}")
-        if source is not None and source in narrow:
-            value[c] += u[c] * moved[source]
-            here.append(c)
-            columns.append(found.fit.unknowns + narrow[source])
-    if here:
-        column = np.array(columns)
-        u[here] *= np.sqrt(np.clip(found.fit.block_covariance(column, column[:, None])[:, 0], 0, 1))
-    return value, u
+    salts = dilution.layout.crystal
+    value, u = dilution.heat_capacity.value[salts], dilution.heat_capacity.u[salts]
+    names = [f"{HEAT_CAPACITY} of {campaign.salts[i].formula}" for i in salts.tolist()]
+    moved, variance = dilution.extrapolation.fit.narrow_sources(names)
+    return value + u * moved, u * np.sqrt(variance)
 
 
 def _influence(dilution: Dilution, count: int) -> Floats:

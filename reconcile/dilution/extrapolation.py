@@ -63,18 +63,15 @@ class Extrapolation:
 
 def solve(
     problem: Problem, sizes: Floats, with_nuisance: bool = False, sweeps: int = SWEEPS
-) -> tuple[LinearFit, Components, float]:
-    """Fit with the mixture's weights swept and frozen; also the log-likelihood of the sizes."""
+) -> tuple[LinearFit, Components]:
+    """Fit with the mixture's weights swept and frozen."""
     precision = problem.prior.precision
-    likelihood = 0.0
     for sweep in range(sweeps + 1):
         fit = problem.fit(sizes, precision, with_nuisance)
         parts = weigh(problem, fit, precision)
-        if sweep == 0:
-            likelihood = fit.log_restricted_likelihood + parts.evidence
         if sweep < sweeps:
             precision = parts.precision
-    return fit, parts, likelihood
+    return fit, parts
 
 
 def log_likelihood(problem: Problem, sizes: Floats) -> float:
@@ -178,7 +175,7 @@ def extrapolate(problem: Problem, gains: sparse.csr_array) -> Extrapolation:
     sample = _enough(problem)
     whole = sample is problem
     found, sizes, alone = screened(sample, estimate_sizes, gains if whole else sparse.csr_array((len(sample.salt), 0)))
-    fit, parts, _ = solve(problem, sizes)
+    fit, parts = solve(problem, sizes)
     sample_fit = fit if whole else sample.fit(sizes, sample.prior.precision)
     freedom = scatter_freedom(sample, sizes, sample_fit)
     scale = 1.0 if whole else len(problem.salt) / len(sample.salt)
@@ -193,7 +190,7 @@ def extrapolate(problem: Problem, gains: sparse.csr_array) -> Extrapolation:
     redundancy = float((information / sample_fit.weight)[: len(sample.salt)].sum())
     if redundancy < MANY and whole and len(sizes):
         points, chance = likelihood_grid(lambda s: posterior(found, s), sizes, starting_sizes(found))
-        some = [_crystal_mixture(problem, *solve(problem, point, sweeps=1)[:2]) for point in points]
+        some = [_crystal_mixture(problem, *solve(problem, point, sweeps=1)) for point in points]
         mean = np.concatenate([m for m, _, _ in some], axis=1)
         variance = np.concatenate([v for _, v, _ in some], axis=1)
         weight = np.concatenate([w * c for (_, _, w), c in zip(some, chance, strict=True)], axis=1)
@@ -238,8 +235,8 @@ def _crystal_mixture(problem: Problem, fit: LinearFit, parts: Components) -> tup
     """Mean, variance and weight of each crystal under each component of its electrolyte's prior, (C, 3) each."""
     crystals = np.arange(problem.crystals)
     block = problem.block_of_crystal
-    sensitivity, own = _sensitivity(problem, fit)
     covariance, value = solution_estimate(problem, fit, 4)
+    sensitivity, own = _sensitivity(problem, fit, covariance)
     mean = fit.value[crystals, None] - np.einsum("cj,ckj->ck", sensitivity, parts.value[block] - value[block, None])
     change = parts.covariance[block] - covariance[block, None]
     variance = own[:, None] + np.einsum("ci,ckij,cj->ck", sensitivity, change, sensitivity)
@@ -252,20 +249,22 @@ def _with_solution(problem: Problem, fit: LinearFit) -> Floats:
     return fit.block_covariance(np.arange(problem.crystals), columns)
 
 
-def _sensitivity(problem: Problem, fit: LinearFit) -> tuple[Floats, Floats]:
-    """How a crystal's ΔsolH° falls with its electrolyte's parameters, (C, 4), and its own variance, (C,)."""
+def _sensitivity(problem: Problem, fit: LinearFit, covariance: Floats) -> tuple[Floats, Floats]:
+    """How a crystal's ΔsolH° falls with its electrolyte's parameters, (C, 4), and its own variance, (C,).
+
+    `covariance` (B, 4, 4) is that of the parameters, the wide sources held.
+    """
     crystals = np.arange(problem.crystals)
     block = problem.block_of_crystal
     columns = np.column_stack([crystals, problem.parameter_column[block]])
     both = fit.block_covariance(crystals, columns)
-    covariance, _ = solution_estimate(problem, fit, 4)
     return np.asarray(-np.linalg.solve(covariance[block], both[:, 1:, None])[:, :, 0]), both[:, 0]
 
 
 def _prior_share(problem: Problem, fit: LinearFit, parts: Components) -> Floats:
     """Share of the information on a crystal's dilution correction that the prior supplied, (C,), 0 to 1."""
-    sensitivity, _ = _sensitivity(problem, fit)
     covariance, _ = solution_estimate(problem, fit, 4)
+    sensitivity, _ = _sensitivity(problem, fit, covariance)
     block = problem.block_of_crystal
     direction = np.einsum("cij,cj->ci", covariance[block], sensitivity)
     whole = np.einsum("ci,ci->c", direction, sensitivity)

@@ -17,8 +17,8 @@ from reconcile.dilution.observing import basis_of, observed_part
 from reconcile.dilution.priors import PublishedSets, prior_of
 from reconcile.dilution.problem import Problem
 from reconcile.dilution.scatter import components_of
-from reconcile.dilution.temperature import U_CURVATURE, HeatCapacityChange
-from reconcile.statistics import Collector, Ledger
+from reconcile.dilution.temperature import HEAT_CAPACITY, LINE, U_CURVATURE, HeatCapacityChange
+from reconcile.statistics import Collector, Ledger, by_member
 
 Floats = NDArray[np.float64]
 Integers = NDArray[np.int64]
@@ -119,9 +119,7 @@ def screened_for(campaign: Campaign, runs: ReducedRuns) -> sparse.csr_array:
     """
     parts = []
     for code, members in ((campaign.calorimeter, len(campaign.calorimeters)), (campaign.sample, len(campaign.samples))):
-        named = np.flatnonzero(code >= 0)
-        shape = (len(campaign.runs), members)
-        parts.append(sparse.csr_array((runs.enthalpy.value[named], (named, code[named])), shape=shape))
+        parts.append(by_member(runs.enthalpy.value, code, members))
     return sparse.csr_array(sparse.hstack(parts, format="csr"))
 
 
@@ -153,11 +151,10 @@ def _to_reference_temperature(
     names = [s.formula for s in campaign.salts]
     if away.any():
         salt = np.where(away != 0, campaign.salt, -1)
-        line = "heat capacity of dissolution"
-        collected.group(salt, change.u, [f"ΔsolCp° of {s}" for s in names], line, -away / 1000)
+        collected.group(salt, change.u, [f"{HEAT_CAPACITY} of {s}" for s in names], LINE, -away / 1000)
         first = np.zeros(len(names))
         first[campaign.salt] = charge_factor
-        curvature = [f"ΔsolCp° of {s}: its change with temperature" for s in names]
-        collected.group(salt, U_CURVATURE * first, curvature, line, -(away**2) / 2000)
+        curvature = [f"{HEAT_CAPACITY} of {s}: its change with temperature" for s in names]
+        collected.group(salt, U_CURVATURE * first, curvature, LINE, -(away**2) / 2000)
     sources, (loading,) = collected.finish()
     return observed.with_sources(loading, sources) if len(sources) else observed

@@ -13,8 +13,6 @@ from reconcile.statistics import LinearFit
 
 Floats = NDArray[np.float64]
 
-TINY = 1e-12
-
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Components:

@@ -16,7 +16,7 @@ from reconcile.dilution.further_terms import further_terms
 from reconcile.dilution.layout import Layout, lay_out, screened_for
 from reconcile.dilution.models import empirical_terms, limiting_law
 from reconcile.dilution.priors import PublishedSets
-from reconcile.dilution.temperature import HeatCapacityChange
+from reconcile.dilution.temperature import HEAT_CAPACITY, HeatCapacityChange
 
 Floats = NDArray[np.float64]
 Integers = NDArray[np.int64]
@@ -71,22 +71,6 @@ def dilute(campaign: Campaign, runs: ReducedRuns, sets: PublishedSets, heat_capa
     return Dilution(layout, found, heat_capacity, slope)
 
 
-def _heat_capacity_found(dilution: Dilution) -> tuple[Floats, Floats]:
-    """What the fit made of the sources of ΔsolC_p°, of all sources (K,): their values, and the variance they lost."""
-    fit = dilution.extrapolation.fit
-    names = dilution.layout.observed.sources.name
-    value, lost = np.zeros(len(names)), np.zeros(len(names))
-    place = {name: i for i, name in enumerate(fit.observations.sources.name)}
-    narrow = {int(k): j for j, k in enumerate(fit.narrow)}
-    ours = [(i, place[n]) for i, n in enumerate(names) if n.startswith("ΔsolCp°") and place[n] in narrow]
-    if ours:
-        here = np.array([i for i, _ in ours])
-        column = np.array([fit.unknowns + narrow[k] for _, k in ours])
-        value[here] = fit.source_values()[[k for _, k in ours]]
-        lost[here] = 1 - np.clip(fit.block_covariance(column, column[:, None])[:, 0], 0, 1)
-    return value, lost
-
-
 def corrected_runs(campaign: Campaign, runs: ReducedRuns, dilution: Dilution) -> Corrected:
     """The runs, one by one, at infinite dilution and the reference temperature."""
     at, found = dilution.layout, dilution.extrapolation
@@ -94,9 +78,11 @@ def corrected_runs(campaign: Campaign, runs: ReducedRuns, dilution: Dilution) ->
     standard = at.observed.value - np.einsum("nj,nj->n", at.basis, found.moved[at.block_of_run])
     variance = at.observed.private_variance + at.observed.shared_variance
     variance += np.einsum("ni,nij,nj->n", at.basis, found.solution_covariance[at.block_of_run], at.basis)
-    moved, taken = _heat_capacity_found(dilution)
-    standard = standard - at.observed.loading @ moved
-    variance -= at.observed.loading.power(2) @ taken
+    names = at.observed.sources.name
+    heat_capacity = np.array([name.startswith(HEAT_CAPACITY) for name in names], dtype=bool)
+    moved, left = found.fit.narrow_sources(names)  # what runs at several temperatures say of ΔsolC_p°
+    standard = standard - at.observed.loading @ np.where(heat_capacity, moved, 0.0)
+    variance -= at.observed.loading.power(2) @ np.where(heat_capacity, 1 - left, 0.0)
     for component, size in zip(found.problem.components, found.sizes, strict=True):
         variance[at.row] += (size * component.scale) ** 2
     n = len(at.row)

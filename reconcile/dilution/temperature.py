@@ -21,6 +21,7 @@ OF_WATER = 35.0  # J/(K mol) for each water of hydration: 75 as liquid less abou
 U_OF_WATER = 15.0
 TABLES = 298.15  # K, of all published enthalpies of solution and formation
 LINE = "heat capacity of dissolution"
+HEAT_CAPACITY = "ΔsolCp°"  # how the names of its sources begin
 U_CURVATURE = 2.0  # J/(K² mol) per unit of ½Σνz², of dΔsolC_p/dT (design, 5.2)
 
 
@@ -81,7 +82,7 @@ def at_the_tables_temperature(
     everyone, ones = np.arange(len(salts)), np.ones(len(salts))
     factor = np.array([0.5 * sum(nu * z * z for (_, nu), z in zip(s.ions, s.charges, strict=True)) for s in salts])
     collected = Collector(len(salts))
-    names = [f"ΔsolCp° of {s.formula}" for s in salts]
+    names = [f"{HEAT_CAPACITY} of {s.formula}" for s in salts]
     collected.group(everyone, change.u, names, LINE, ones * away / 1000)
     curvature = [f"{name}: its change with temperature" for name in names]
     collected.group(everyone, U_CURVATURE * factor, curvature, LINE, ones * away**2 / 2000)

@@ -9,8 +9,8 @@ import numpy as np
 import pandas as pd
 from numpy.typing import NDArray
 
-from reconcile.calorimetry import MOLAR_MASS_OF_WATER
 from reconcile.chemistry import read_salt, water
+from reconcile.chemistry.water import MOLAR_MASS_OF_WATER
 from reconcile.dilution import electrolytes
 from reconcile.dilution.models import empirical_terms, limiting_law
 

@@ -73,3 +73,17 @@ class Collector:
         columns = np.concatenate([c for _, c, _ in self._at])
         values = [np.concatenate([v[i] for _, _, v in self._at]) for i in range(self._ledgers)]
         return sources, [sparse.csr_array((v, (rows, columns)), shape=shape) for v in values]
+
+
+def by_member(effect: Floats, code: NDArray[np.int64], members: int) -> sparse.csr_array:
+    """Each run's effect in the column of its calorimeter, lot …; sparse (n, members).
+
+    Examples
+    --------
+    >>> by_member(np.array([1.0, 2.0, 3.0]), np.array([0, -1, 1]), 2).toarray()
+    array([[1., 0.],
+           [0., 0.],
+           [0., 3.]])
+    """
+    named = np.flatnonzero(code >= 0)
+    return sparse.csr_array((effect[named], (named, code[named])), shape=(len(effect), members))

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass
 from functools import cached_property
 
@@ -104,6 +105,20 @@ class LinearFit:
         log_a = self._factor.log_determinant
         log_s = 2 * float(np.log(np.diag(self._corner[0])).sum())
         return -0.5 * (log_a + log_s - float(np.log(self.weight).sum()) + self.chi_square)
+
+    def narrow_sources(self, names: Sequence[str]) -> tuple[Floats, Floats]:
+        """Predicted values and variances of sources solved for inside their block; 0 and 1 for all others.
+
+        The wide sources are held.
+        """
+        place = {self.observations.sources.name[k]: self.unknowns + j for j, k in enumerate(self.narrow.tolist())}
+        column = np.array([place.get(name, -1) for name in names], dtype=np.int64)
+        value, variance = np.zeros(len(names)), np.ones(len(names))
+        here = np.flatnonzero(column >= 0)
+        if here.size:
+            value[here] = self._source_inner[column[here] - self.unknowns]
+            variance[here] = np.clip(self.block_covariance(column[here], column[here][:, None])[:, 0], 0, 1)
+        return value, variance
 
     def source_values(self) -> Floats:
         """Predicted values of all sources, (K,), in standard deviations."""

@@ -72,7 +72,7 @@ def test_runs_that_say_nothing_leave_the_weights_as_they_were(laid_out, toml, we
     "One run fixes the crystal and nothing else; a parameter that the solution does not have says nothing either."
     problem = laid_out(runs_of("KCl", [0.1], [17.5]), toml, fit=False).problem
     for sweeps in (0, 1, 2, 5):
-        _, parts, _ = solve(problem, np.zeros(len(problem.components)), sweeps=sweeps)
+        _, parts = solve(problem, np.zeros(len(problem.components)), sweeps=sweeps)
         np.testing.assert_allclose(parts.weight[0], weights, rtol=1e-6)
     assert np.abs(parts.information).max() < 1e-6
 
@@ -112,6 +112,6 @@ def test_average_prior_gives_the_average_estimate(laid_out):
     "The single normal prior that stands for the mixture: its map is the weighted map."
     m = np.geomspace(0.02, 0.9, 7)
     problem = laid_out(runs_of("KCl", m, 17 + 2 * np.sqrt(m) + 1.5 * m), POPULATION, fit=False).problem
-    fit, parts, _ = solve(problem, np.zeros(len(problem.components)), sweeps=8)
+    fit, parts = solve(problem, np.zeros(len(problem.components)), sweeps=8)
     average = parts.weight[0] @ parts.value[0]
     np.testing.assert_allclose(fit.value[problem.parameter_column[0, :3]], average[:3], atol=1e-6)
